@@ -27,7 +27,9 @@ class Source:
             raise DataFault("A source needs a text.", field="source", remedy="Name the work and its edition.")
         if self.how not in HOW:
             raise DataFault(
-                f"“{self.how}” is no known way to a value.", field="how", remedy="Use one of: " + ", ".join(HOW) + "."
+                f"“{self.how}” is no known way to a value.",
+                field="how",
+                remedy="Use one of: " + ", ".join(HOW) + ".",
             )
         if self.confidence not in CONFIDENCE:
             raise DataFault(
