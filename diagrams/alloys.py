@@ -33,7 +33,8 @@ class Alloy:
     `given_total_wt` is the sum before normalisation (of the percents as given). `limits_wt` gives the
     lowest and highest mass percent of each element that has a tolerance: ± about the nominal cut at
     the physical ends 0 and 100, or the standard's own range, which may name an element the nominal
-    leaves out (tin in RBCuZn-A) or leave the printed nominal outside (lithium in BAg-8a). `designation` and `filler` are set only if a designation was asked for.
+    leaves out (tin in RBCuZn-A) or leave the printed nominal outside (lithium in BAg-8a).
+    `designation` and `filler` are set only if a designation was asked for.
     """
 
     composition_wt: Mapping[str, float]
