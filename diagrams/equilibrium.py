@@ -5,6 +5,7 @@ sharpens each (tie.py), and every phase is then checked to lie on or above every
 """
 
 from dataclasses import dataclass
+from itertools import pairwise
 
 import numpy as np
 
@@ -155,16 +156,17 @@ class Isotherm:
         unstable = [s for s in self._solutions if np.any(s.curvatures(middles) < 0.0)]
         ties: list[Tie] = []
         ends: list[tuple[PhaseAtT, PhaseAtT]] = []
-        for (x1, _, a), (x2, _, b) in zip(hull, hull[1:], strict=False):
+        for (x1, _, a), (x2, _, b) in pairwise(hull):
             if a is not b or (a in unstable and isinstance(a, SolutionAtT) and self._is_gap(a, x1, x2)):
                 ties.append(solve_tie(a, b, x1, x2))
                 ends.append((a, b))
         k = 0
         while k + 1 < len(ties):
-            if ties[k].right <= ties[k + 1].left:
+            one, two = ties[k], ties[k + 1]
+            if one.right <= two.left and one.mu2 - one.mu1 <= two.mu2 - two.mu1:
                 k += 1
                 continue
-            # The two tangents cross before they touch the phase between them: it lies just above.
+            # Not convex: the phase between the two tangents lies just above their common one.
             outer = (ends[k][0], ends[k + 1][1])
             ties[k : k + 2] = [solve_tie(*outer, ties[k].left, ties[k + 1].right)]
             ends[k : k + 2] = [outer]
@@ -184,14 +186,14 @@ class Isotherm:
             for solution, row in zip(self._solutions, depth, strict=True):
                 k = int(np.argmin(row))
                 if row[k] < -BELOW_TANGENT * self._rt:
-                    missing.append(_parallel_tangent(solution, float(grid[k]), tie.mu2 - tie.mu1))
+                    missing.append(parallel_tangent(solution, float(grid[k]), tie.mu2 - tie.mu1))
             for c in self._compounds:
                 if c.g < tie.mu1 * (1.0 - c.phase.x) + tie.mu2 * c.phase.x - BELOW_TANGENT * self._rt:
                     raise NotConverged(f"{c.phase.model} lies under a tangent at {self.temperature_k:.3f} K")
         return np.array(missing)
 
 
-def _parallel_tangent(solution: SolutionAtT, x: float, slope: float) -> float:
+def parallel_tangent(solution: SolutionAtT, x: float, slope: float) -> float:
     """Where the solution's own tangent has the given slope (J/mol), started at x: its deepest point."""
     u = logit(x)
     for _ in range(20):
