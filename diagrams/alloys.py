@@ -11,9 +11,9 @@ from collections.abc import Mapping
 from dataclasses import dataclass, field
 from types import MappingProxyType
 
-from diagrams.elements import symbol
-from diagrams.errors import InvalidComposition
-from diagrams.fillers import Filler, find_filler, match_filler, shown
+from diagrams.elements import MOLAR_MASS, symbol
+from diagrams.errors import DiagramsError, InvalidComposition
+from diagrams.fillers import Filler, find_filler, match_filler, shown, unknown_designation
 from diagrams.units import at_to_wt
 
 TOTAL_TOLERANCE = 0.1  # percent by which a given composition may miss 100
@@ -110,10 +110,13 @@ def parse_alloy(text: str, tolerance_wt: Mapping[str, float] | None = None, *, f
     if match_filler(text) is not None:
         return alloy_from_designation(text, tolerance_wt, field=field)
     if len(text) > _LONGEST_TEXT or not _COMPOSITION.fullmatch(text):
-        return _unreadable(text, field)
+        raise _unreadable(text, field)
     parts = [(found[1], found[2]) for found in _PART.finditer(text)]
-    numbers = {symbol(el, field): float(value) for el, value in parts if value is not None}
-    opened = [symbol(el, field) for el, value in parts if value is None]
+    for el, _ in parts:
+        if el not in MOLAR_MASS:
+            raise unknown_designation(text, field, f", and {el} is no element known here")
+    numbers = {el: float(value) for el, value in parts if value is not None}
+    opened = [el for el, value in parts if value is None]
     if len(numbers) + len(opened) != len(parts) or set(opened) & set(numbers):
         raise InvalidComposition(
             f"“{shown(text)}” names an element twice.", field=field, remedy="Name each element once."
@@ -136,19 +139,19 @@ def parse_alloy(text: str, tolerance_wt: Mapping[str, float] | None = None, *, f
     return alloy_from_wt(numbers, tolerance_wt, field=field)
 
 
-def _unreadable(text: str, field: str) -> Alloy:
-    """Raise the error that helps most with a text that is neither designation nor composition."""
+def _unreadable(text: str, field: str) -> DiagramsError:
+    """The error that helps most with a text that is neither designation nor composition."""
     if (
         len(text) <= _LONGEST_TEXT
         and re.search(r"[-\s]\s*[0-9]", text)
         and re.search(r"[0-9][A-Z][a-z]?", text)
     ):
-        raise InvalidComposition(
+        return InvalidComposition(
             f"“{shown(text)}” is ambiguous: a number may belong to the element before or after it.",
             field=field,
             remedy="Write each number right after its element, without hyphens: Ag3Cu0.5Sn.",
         )
-    return alloy_from_designation(text, field=field)
+    return unknown_designation(text, field)
 
 
 def _checked(composition: Mapping[str, float], field: str) -> dict[str, float]:
@@ -164,7 +167,7 @@ def _checked(composition: Mapping[str, float], field: str) -> dict[str, float]:
         el = symbol(shown(name), field)
         if el in checked:
             raise InvalidComposition(f"{el} is named twice.", field=field, remedy="Name each element once.")
-        checked[el] = _number(value, f"{field}.{el}", highest=100.0)
+        checked[el] = _number(value, f"{field}.{el}", highest=100.0, slack=TOTAL_TOLERANCE)
     total = math.fsum(checked.values())
     if not abs(total - 100.0) <= TOTAL_TOLERANCE + 1e-9:
         raise InvalidComposition(
@@ -175,10 +178,11 @@ def _checked(composition: Mapping[str, float], field: str) -> dict[str, float]:
     return checked
 
 
-def _number(value: object, field: str, *, highest: float) -> float:
-    """A finite number from 0 to `highest`; booleans and texts are none."""
-    if isinstance(value, bool) or not isinstance(value, int | float) or not 0.0 <= value <= highest:
-        told = f", not {value:g}" if isinstance(value, float) else ""
+def _number(value: object, field: str, *, highest: float, slack: float = 0.0) -> float:
+    """A finite number from 0 to `highest` (and `slack`, left to the sum); booleans and texts are none."""
+    if isinstance(value, bool) or not isinstance(value, int | float) or not 0.0 <= value <= highest + slack:
+        short = isinstance(value, float) or (isinstance(value, int) and abs(value) < 10**9)
+        told = f", not {value:g}" if short and not isinstance(value, bool) else ""
         raise InvalidComposition(
             f"{field} must be a number from 0 to {highest:g}{told}.",
             field=field,

@@ -90,9 +90,7 @@ def find_filler(text: str, *, field: str = "designation") -> Filler:
     """
     filler = match_filler(text)
     if filler is None:
-        raise UnknownAlloy(
-            f"“{shown(text)}” is no designation in the filler table.", field=field, remedy=_nearest(text)
-        )
+        raise unknown_designation(text, field)
     return filler
 
 
@@ -106,16 +104,21 @@ def shown(text: str) -> str:
     return text if len(text) <= _LONGEST_DESIGNATION else text[:_LONGEST_DESIGNATION] + "…"
 
 
-def _nearest(text: str) -> str:
+def unknown_designation(text: str, field: str, also: str = "") -> UnknownAlloy:
+    """The error for a text that is no designation, with the nearest ones as remedy."""
     near: list[str] = []
     if len(text) <= _LONGEST_DESIGNATION:
         keys = difflib.get_close_matches(designation_key(text), sorted(_index()), n=5, cutoff=0.6)
         near = list(dict.fromkeys(_index()[key].name for key in keys))
-    ask = (
+    remedy = (
         "Use a designation of the filler table (ISO 9453, J-STD-006, ISO 17672, AWS A5.8), "
         "or a composition such as Ag3Cu0.5Sn."
     )
-    return f"{ask} Near: {', '.join(near)}." if near else ask
+    return UnknownAlloy(
+        f"“{shown(text)}” is no designation in the filler table{also}.",
+        field=field,
+        remedy=f"{remedy} Near: {', '.join(near)}." if near else remedy,
+    )
 
 
 @cache
