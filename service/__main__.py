@@ -1,0 +1,94 @@
+"""`python -m service`: starts the web service with its own access line and no server header."""
+
+import argparse
+import logging.config
+import os
+import sys
+from collections.abc import Sequence
+
+import uvicorn
+from uvicorn.protocols.http.httptools_impl import HttpToolsProtocol
+
+from service.app import create_app
+from service.problems import problem_response
+from service.settings import Settings, SettingsError, settings_from
+
+LOGGING = {
+    "version": 1,
+    "disable_existing_loggers": False,
+    "formatters": {"line": {"format": "%(asctime)s %(levelname)s %(name)s: %(message)s"}},
+    "handlers": {
+        "out": {"class": "logging.StreamHandler", "formatter": "line", "stream": "ext://sys.stdout"}
+    },
+    "root": {"level": "INFO", "handlers": ["out"]},
+}
+
+
+class Protocol(HttpToolsProtocol):
+    """Answers what is no HTTP as every other error is answered: as problem details with the cautions."""
+
+    def send_400_response(self, msg: str) -> None:
+        """Answer bytes that could not be parsed, and close."""
+        response = problem_response({}, "bad-request", "What came in is no HTTP request.")
+        headers = [*response.raw_headers, (b"link", b'</v1/safety>; rel="help"'), (b"connection", b"close")]
+        lines = b"".join(b"%s: %s\r\n" % header for header in headers)
+        self.transport.write(b"HTTP/1.1 400 Bad Request\r\n" + lines + b"\r\n" + bytes(response.body))
+        self.transport.close()
+
+
+def main(arguments: Sequence[str] | None = None) -> int:
+    """Read the settings, start, and serve until told to stop; return the exit code."""
+    try:
+        settings = read_settings(arguments)
+    except SettingsError as error:
+        sys.stderr.write(f"meltband: {error}\n")
+        return 2
+    serve(settings)
+    return 0
+
+
+def read_settings(arguments: Sequence[str] | None) -> Settings:
+    """Combine the environment with the command line; the command line wins."""
+    parser = argparse.ArgumentParser(prog="python -m service", description="Serve Meltband over HTTP.")
+    parser.add_argument("--host", help="address to listen on (default 127.0.0.1)")
+    parser.add_argument("--port", type=int, help="port to listen on (default 8000; 0 takes any free one)")
+    parser.add_argument("--root-path", help="path prefix a proxy serves this under, such as /meltband")
+    parser.add_argument(
+        "--allow-remote",
+        action="store_const",
+        const=True,
+        help="listen on an address other machines can reach; there is no log-in",
+    )
+    given = parser.parse_args(arguments)
+    settings = settings_from(
+        os.environ,
+        host=given.host,
+        port=given.port,
+        root_path=given.root_path,
+        allow_remote=given.allow_remote,
+    )
+    settings.check_address()
+    return settings
+
+
+def serve(settings: Settings) -> None:
+    """Run the server; SIGTERM and SIGINT let running answers finish first."""
+    logging.config.dictConfig(LOGGING)
+    logging.getLogger("meltband.access").disabled = not settings.access_log
+    uvicorn.run(
+        create_app(settings),
+        host=settings.host,
+        port=settings.port,
+        http=Protocol,
+        ws="none",
+        log_config=None,
+        access_log=False,
+        server_header=False,
+        forwarded_allow_ips=settings.trusted_proxies,
+        timeout_keep_alive=settings.keep_alive_s,
+        timeout_graceful_shutdown=settings.graceful_timeout_s,
+    )
+
+
+if __name__ == "__main__":
+    sys.exit(main())

@@ -1,0 +1,57 @@
+import math
+
+import pytest
+
+from service.json_body import DuplicateKey, UnreadableJson, read_json
+
+
+def test_ordinary_json_is_read_as_it_is():
+    assert read_json('{"a": [1, 2.5, null, true, "µ"], "b": {"a": {}}}'.encode()) == {
+        "a": [1, 2.5, None, True, "µ"],
+        "b": {"a": {}},
+    }
+
+
+@pytest.mark.parametrize(
+    ("text", "path"),
+    [
+        ('{"a": 1, "a": 1}', ("a",)),
+        ('{"alloy": {"composition_wt": {"Sn": 60, "Pb": 40, "Sn": 3}}}', ("alloy", "composition_wt", "Sn")),
+        ('{"parts": [{"x": 1}, {"x": 1, "x": 2}]}', ("parts", 1, "x")),
+        ('[{"a": 1}, {"b": [{"": 1, "": 2}]}]', (1, "b", 0, "")),
+    ],
+)
+def test_a_key_given_twice_is_refused_with_its_path(text, path):
+    with pytest.raises(DuplicateKey) as caught:
+        read_json(text.encode())
+    assert caught.value.path == path
+
+
+@pytest.mark.parametrize(
+    ("body", "place", "words"),
+    [
+        (b'{"a": 1,\n "b": }', (2, 7), "Expecting value"),
+        (b'{"a": 1} x', (1, 10), "Extra data"),
+        (b'{\n"a": "\xff"}', (2, 7), "no UTF-8"),
+        (b"[" * 200_000, None, "nested too deeply"),
+        (b"[" + b"1" * 5000 + b"]", None, "too many digits"),
+        (rb'{"\ud800": 1}', None, "surrogate"),
+        (rb'["\\u0041", "\udc00\ud800"]', None, "surrogate"),
+        ("\ufeff{}".encode(), (1, 1), "BOM"),
+    ],
+)
+def test_what_is_no_json_is_refused_with_its_place(body, place, words):
+    with pytest.raises(UnreadableJson, match=words) as caught:
+        read_json(body)
+    assert caught.value.place == place
+    assert ("at line" in str(caught.value)) is (place is not None)
+
+
+def test_whole_surrogate_pairs_and_escaped_backslashes_are_fine():
+    assert read_json(rb'["\ud83d\ude00", "\\ud800"]') == ["\U0001f600", "\\ud800"]
+
+
+def test_numbers_that_are_none_are_left_for_the_models_to_refuse_by_field():
+    read = read_json(b'{"a": NaN, "b": 1e999, "c": -Infinity}')
+    assert math.isnan(read["a"])
+    assert (read["b"], read["c"]) == (math.inf, -math.inf)
