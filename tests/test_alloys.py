@@ -123,6 +123,12 @@ def test_sums_within_a_tenth_are_normalised_and_told(total: float) -> None:
     assert alloy.composition_wt["Pb"] == pytest.approx(3700.0 / total, abs=1e-12)
 
 
+def test_one_element_alone_may_miss_100_by_a_tenth() -> None:
+    alloy = alloy_from_wt({"Sn": 100.05})
+    assert dict(alloy.composition_wt) == {"Sn": 100.0}
+    assert alloy.given_total_wt == 100.05
+
+
 @pytest.mark.parametrize("total", [99.8999, 100.1001])
 def test_sums_beyond_a_tenth_are_refused(total: float) -> None:
     with pytest.raises(InvalidComposition):
