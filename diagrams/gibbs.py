@@ -7,7 +7,7 @@ x₁x₂ Σ Lₖ (x₁ − x₂)ᵏ on top of the ideal entropy of mixing; compo
 
 import math
 from dataclasses import dataclass
-from typing import Literal
+from typing import Any, Literal, overload
 
 import numpy as np
 from numpy.typing import NDArray
@@ -46,7 +46,7 @@ class Energy:
 
 @dataclass(frozen=True)
 class Names:
-    """What a phase is called: `by_x` gives (upper x, name) in order; `spanning` names it where it is one field."""
+    """What a phase is called: `by_x` lists (upper x, name); `spanning` names a field that holds several."""
 
     by_x: tuple[tuple[float, str], ...]
     spanning: str | None = None
@@ -163,7 +163,11 @@ class SolutionAtT:
         """The same for an array of mole fractions."""
         return self.rt + x * (1.0 - x) * self._excess(x, 1.0 - x)[2]
 
-    def _excess(self, x, y):  # type: ignore[no-untyped-def]  # floats or arrays alike, on the hot path
+    @overload
+    def _excess(self, x: float, y: float) -> tuple[float, float, float]: ...
+    @overload
+    def _excess(self, x: Floats, y: Floats) -> tuple[Floats, Floats, Floats]: ...
+    def _excess(self, x: Any, y: Any) -> Any:
         """Excess energy f = x y s(d), d = y − x, with its first and second derivative in x."""
         d = y - x
         s = ds = d2s = 0.0 * d

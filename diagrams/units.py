@@ -57,9 +57,7 @@ def second_wt_to_x(
 def x_to_second_wt(x: float, first: str, second: str) -> float: ...
 @overload
 def x_to_second_wt(x: NDArray[np.float64], first: str, second: str) -> NDArray[np.float64]: ...
-def x_to_second_wt(
-    x: float | NDArray[np.float64], first: str, second: str
-) -> float | NDArray[np.float64]:
+def x_to_second_wt(x: float | NDArray[np.float64], first: str, second: str) -> float | NDArray[np.float64]:
     """Mass percent of the second element (0..100) from its mole fraction (0..1)."""
     m2 = x * MOLAR_MASS[second]
     m1 = (1.0 - x) * MOLAR_MASS[first]

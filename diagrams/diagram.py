@@ -1,0 +1,69 @@
+"""A phase diagram as it is served: regions as polygons, x = wt% of the second element, y = °C. Immutable."""
+
+from collections.abc import Mapping
+from dataclasses import dataclass, field
+from types import MappingProxyType
+from typing import Literal
+
+import shapely
+
+from diagrams.sources import Source
+
+RegionKind = Literal["liquid", "solid"]
+
+
+@dataclass(frozen=True)
+class Region:
+    """One field of the diagram. `phases`, `kinds` and `models` run alike, left phase first.
+
+    `beyond_wt` gives, for a line compound cut off by the edge of the stored range, its composition.
+    """
+
+    phases: tuple[str, ...]
+    kinds: tuple[RegionKind, ...]
+    models: tuple[str, ...]
+    polygon: shapely.Polygon
+    beyond_wt: Mapping[str, float] = field(default_factory=lambda: MappingProxyType({}))
+
+    @property
+    def name(self) -> str:
+        """The field's name, such as `L + (Pb)`: the liquid stands first."""
+        order = sorted(range(len(self.phases)), key=lambda k: self.kinds[k] != "liquid")
+        return " + ".join(self.phases[k] for k in order)
+
+
+@dataclass(frozen=True)
+class Invariant:
+    """A temperature at which the phases present change all at once, with the composition of each in wt%."""
+
+    kind: str
+    temperature_c: float
+    reaction: str
+    compositions_wt: Mapping[str, float]
+
+
+@dataclass(frozen=True)
+class LineCompound:
+    """A phase of fixed composition, without width: it has no polygon of its own."""
+
+    name: str
+    second_wt: float
+    from_c: float
+    to_c: float
+
+
+@dataclass(frozen=True)
+class Diagram:
+    """A binary phase diagram with its provenance."""
+
+    id: str
+    elements: tuple[str, str]
+    kind: Literal["parameters", "points"]
+    temperature_range_c: tuple[float, float]
+    composition_range_wt: tuple[float, float]
+    edition: str
+    sources: tuple[Source, ...]
+    notes: tuple[str, ...]
+    regions: tuple[Region, ...]
+    invariants: tuple[Invariant, ...]
+    compounds: tuple[LineCompound, ...]
