@@ -128,4 +128,5 @@ def problem_kind(code: str) -> HTMLResponse:
     if code not in KINDS:
         raise Refusal("not-found", "There is no problem with this code; /problems lists all.")
     body = f"<h1>{KINDS[code].title}</h1>{pages.problem_list([(code, *KINDS[code])])}"
-    return _page(f"Meltband: {KINDS[code].title}", body + '<p><a href="./">All problems</a></p>', up="../")
+    body += '<p><a href="../problems">All problems</a></p>'
+    return _page(f"Meltband: {KINDS[code].title}", body, up="../")
