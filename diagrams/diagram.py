@@ -2,6 +2,7 @@
 
 from collections.abc import Mapping
 from dataclasses import dataclass, field
+from functools import cached_property
 from types import MappingProxyType
 from typing import Literal
 
@@ -12,7 +13,7 @@ from diagrams.sources import Source
 RegionKind = Literal["liquid", "solid"]
 
 
-@dataclass(frozen=True)
+@dataclass(frozen=True, eq=False)
 class Region:
     """One field of the diagram. `phases`, `kinds` and `models` run alike, left phase first.
 
@@ -25,7 +26,7 @@ class Region:
     polygon: shapely.Polygon
     beyond_wt: Mapping[str, float] = field(default_factory=lambda: MappingProxyType({}))
 
-    @property
+    @cached_property
     def name(self) -> str:
         """The field's name, such as `L + (Pb)`: the liquid stands first."""
         order = sorted(range(len(self.phases)), key=lambda k: self.kinds[k] != "liquid")
@@ -52,7 +53,7 @@ class LineCompound:
     to_c: float
 
 
-@dataclass(frozen=True)
+@dataclass(frozen=True, eq=False)
 class Diagram:
     """A binary phase diagram with its provenance."""
 
