@@ -29,7 +29,7 @@ def read_json(body: bytes) -> Any:
     NaN, Infinity and numbers too large for a float come through as such: the models refuse them by field.
     """
     try:
-        read = json.loads(body.decode("utf-8"), object_pairs_hook=_unique)
+        read = _DECODER.decode(body.decode("utf-8"))
         if b"\\u" in body:  # only an escape can bring half a surrogate pair, which no answer could repeat
             json.dumps(read, ensure_ascii=False).encode("utf-8")
         return read
@@ -58,6 +58,9 @@ def _unique(pairs: list[tuple[str, Any]]) -> dict[str, Any]:
     if len(made) != len(pairs):
         raise _Twice
     return made
+
+
+_DECODER = json.JSONDecoder(object_pairs_hook=_unique)
 
 
 class _Pairs(list[tuple[str, Any]]):

@@ -2,8 +2,8 @@
 
 import hashlib
 import logging
+import os
 import re
-import secrets
 import time
 from collections.abc import MutableMapping
 from typing import Any
@@ -92,7 +92,7 @@ class _Asked:
                 self.if_none_match += (b"," if self.if_none_match else b"") + value
             elif name == b"content-length" and value.isdigit():
                 self.content_length = int(value)
-        self.request_id = given.decode() if _REQUEST_ID.fullmatch(given) else secrets.token_hex(8)
+        self.request_id = given.decode() if _REQUEST_ID.fullmatch(given) else os.urandom(8).hex()
 
 
 class _Answer:

@@ -85,4 +85,11 @@ async def refuse_other_bodies(request: Request) -> None:
 
 def new_router(tag: str, prefix: str = "/v1") -> APIRouter:
     """Make a router whose routes are strict and stand under one heading of the docs page."""
-    return APIRouter(prefix=prefix, tags=[tag], route_class=StrictRoute)
+    return APIRouter(
+        prefix=prefix, tags=[tag], route_class=StrictRoute, generate_unique_id_function=_operation_id
+    )
+
+
+def _operation_id(route: APIRoute) -> str:
+    """Name an operation after its function, so that generated clients have steady names."""
+    return route.name

@@ -37,7 +37,7 @@ def test_a_key_given_twice_is_refused_with_its_path(text, path):
         (b"[" + b"1" * 5000 + b"]", None, "too many digits"),
         (rb'{"\ud800": 1}', None, "surrogate"),
         (rb'["\\u0041", "\udc00\ud800"]', None, "surrogate"),
-        ("\ufeff{}".encode(), (1, 1), "BOM"),
+        ("\ufeff{}".encode(), (1, 1), "Expecting value"),
     ],
 )
 def test_what_is_no_json_is_refused_with_its_place(body, place, words):

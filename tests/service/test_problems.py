@@ -59,7 +59,7 @@ def provoking_app() -> FastAPI:
             return Reply(temperature_c=float("nan"), safety=safety_for(()))
         return Reply(temperature_c=temperature_c, safety=safety_for(()))
 
-    app.include_router(router)
+    app.router.routes.extend(router.routes)
     return app
 
 
