@@ -3,12 +3,14 @@ from pathlib import Path
 
 import pytest
 
+from diagrams.equilibrium import Isotherm
 from diagrams.files import assessments
 from diagrams.files.assessments import assessment_ids, read_assessment
 from diagrams.fillers import find_filler
 from diagrams.fitting.fit import fit_ids, fitted_document, fitted_facts, read_fit, run_fit
 from diagrams.fitting.layout import parameter_text
 from diagrams.fitting.targets import solve_target
+from diagrams.units import celsius_to_kelvin, x_to_second_wt
 
 
 def stored_text(diagram_id: str) -> str:
@@ -42,6 +44,26 @@ def test_stored_file_says_what_it_was_fitted_to_and_reaches_it(diagram_id):
         assert reached["name"] == target.name
         assert reached["temperature_c"] == pytest.approx(point.temperature_c, abs=0.051)
         assert reached["second_wt"] == pytest.approx(list(point.wt), abs=0.0051)
+
+
+@pytest.mark.parametrize("diagram_id", fit_ids())
+def test_the_minimiser_finds_every_fitted_point_stable(diagram_id):
+    """A fit solves each point by itself; no other phase may lie lower there."""
+    system = read_assessment(diagram_id).system
+    for target in read_fit(diagram_id).targets:
+        point = solve_target(target, system)
+        ends = []
+        steps = (0.0,) if target.kind in ("tie", "boundary") else (-0.2, 0.2)  # both sides of an invariant
+        for step in steps:
+            for tie in Isotherm(system, celsius_to_kelvin(point.temperature_c + step)).ties:
+                for phase, x in ((tie.first, tie.left), (tie.second, tie.right)):
+                    ends.append((phase.model, x_to_second_wt(x, *system.elements)))
+        # near an extremum the compositions run away as the root of the distance
+        near = {"tie": 0.001, "boundary": 0.001, "invariant": 0.5, "congruent": 2.0, "critical": 4.0}[
+            target.kind
+        ]
+        for model, wt in zip(target.models, point.wt, strict=True):
+            assert any(m == model and abs(w - wt) < near for m, w in ends), (target.name, model)
 
 
 @pytest.mark.parametrize("diagram_id", assessment_ids())
