@@ -13,7 +13,8 @@ from diagrams.errors import NotConverged
 from diagrams.gibbs import GAS_CONSTANT, Compound, Floats, Phase, Solution, SolutionAtT, System, logit
 from diagrams.tie import FixedAtT, PhaseAtT, Tie, solve_tie
 
-BELOW_TANGENT = 1e-7  # of RT: how far a phase may lie under a tangent before the answer is refused
+BELOW_TANGENT = 1e-8  # of RT: how far a phase may lie under a tangent before the answer is refused
+NEAR_TANGENT = 1e-3  # of RT: a phase this near a tangent at a grid point may dip under it between two
 MOST_ROUNDS = 8
 
 
@@ -184,9 +185,12 @@ class Isotherm:
         for tie in ties:
             depth = energies - (tie.mu1 * (1.0 - grid) + tie.mu2 * grid)
             for solution, row in zip(self._solutions, depth, strict=True):
-                k = int(np.argmin(row))
-                if row[k] < -BELOW_TANGENT * self._rt:
-                    missing.append(parallel_tangent(solution, float(grid[k]), tie.mu2 - tie.mu1))
+                dips = (row[1:-1] <= row[:-2]) & (row[1:-1] <= row[2:]) & (row[1:-1] < NEAR_TANGENT * self._rt)
+                for k in np.flatnonzero(dips) + 1:
+                    x = parallel_tangent(solution, float(grid[k]), tie.mu2 - tie.mu1)
+                    above = solution.energy(x) - tie.mu1 * (1.0 - x) - tie.mu2 * x
+                    if above < -BELOW_TANGENT * self._rt:
+                        missing.append(x)
             for c in self._compounds:
                 if c.g < tie.mu1 * (1.0 - c.phase.x) + tie.mu2 * c.phase.x - BELOW_TANGENT * self._rt:
                     raise NotConverged(f"{c.phase.model} lies under a tangent at {self.temperature_k:.3f} K")
