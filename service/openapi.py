@@ -58,6 +58,8 @@ def describe_errors(
 
 
 def _describe_operation(operation: dict[str, Any]) -> None:
+    for parameter in operation.get("parameters", ()):
+        _describe_parameter(parameter)
     responses = operation["responses"]
     responses.pop("422", None)
     if operation.get("parameters") or operation.get("requestBody"):
@@ -68,6 +70,17 @@ def _describe_operation(operation: dict[str, Any]) -> None:
             "description": 'Where the cautions are: `</v1/safety>; rel="help"`.',
             "schema": {"type": "string"},
         }
+
+
+def _describe_parameter(parameter: dict[str, Any]) -> None:
+    """State what an address line can really hold: never null; the first example is there to be tried."""
+    schema = parameter["schema"]
+    kinds = [kind for kind in schema.get("anyOf", ()) if kind != {"type": "null"}]
+    if len(kinds) == 1:
+        rest = {name: value for name, value in schema.items() if name not in ("anyOf", "examples")}
+        parameter["schema"] = kinds[0] | rest
+    if examples := schema.get("examples") or [e for kind in kinds for e in kind.get("examples", ())]:
+        parameter["example"] = examples[0]
 
 
 def _response(description: str) -> dict[str, Any]:

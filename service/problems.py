@@ -10,6 +10,7 @@ from pydantic import Field
 from starlette.exceptions import HTTPException
 from starlette.requests import Request
 from starlette.responses import Response
+from starlette.routing import Match
 
 from diagrams.errors import DiagramsError
 from service.complaints import complain
@@ -187,10 +188,16 @@ async def _on_http_exception(request: Request, error: Exception) -> Response:
     headers = dict(error.headers or {})
     detail = KINDS[code].meaning
     if error.status_code == 405:
-        allowed = {part.strip() for part in headers.get("Allow", "").split(",") if part.strip()}
-        headers["Allow"] = ", ".join(sorted(allowed | ({"HEAD"} if "GET" in allowed else set())))
+        headers["Allow"] = ", ".join(_methods_possible(request))
         detail = f"{request.scope['method']} is not possible here; possible: {headers['Allow']}."
     return problem_response(request.scope, code, detail, status=error.status_code, headers=headers)
+
+
+def _methods_possible(request: Request) -> list[str]:
+    """Gather the methods of all routes at this address; one address may be two routes."""
+    here = [route for route in request.app.routes if route.matches(request.scope)[0] != Match.NONE]
+    methods = {method for route in here for method in route.methods}
+    return sorted(methods | ({"HEAD"} if "GET" in methods else set()))
 
 
 def _explain(item: Mapping[str, Any]) -> FieldError:

@@ -90,6 +90,20 @@ def test_every_example_is_answered(ask, method, path, kind, value):
     assert "safety" in answer.text
 
 
+@pytest.mark.parametrize(("method", "path", "operation"), [o for o in OPERATIONS if o[0] == "get"])
+def test_an_address_filled_with_its_examples_is_answered(ask, method, path, operation):
+    filled = {p["name"]: p["example"] for p in operation.get("parameters", []) if "example" in p}
+    in_path = {p["name"]: filled.pop(p["name"]) for p in operation.get("parameters", []) if p["in"] == "path"}
+    answer = ask(method.upper(), path.format(**in_path), params=filled)
+    assert answer.status_code == 200, answer.text
+
+
+def test_no_parameter_is_said_to_take_null():
+    schemas = [p["schema"] for _, _, operation in OPERATIONS for p in operation.get("parameters", [])]
+    assert schemas
+    assert not [schema for schema in schemas if "null" in json.dumps(schema)]
+
+
 def test_the_cautions_stand_in_the_description_too():
     assert {"notes", "regulations", "reminder"} <= SCHEMA["x-safety"].keys()
 

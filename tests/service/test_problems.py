@@ -47,6 +47,14 @@ def provoking_app() -> FastAPI:
                 raise OutsideData("Too hot.", field="composition_wt.Sn", remedy="Ask below 5000 °C.")
         return Reply(temperature_c=question.temperature_c, safety=safety_for(()))
 
+    @router.post("/both")
+    async def both_by_body(question: Question) -> Reply:
+        return Reply(temperature_c=question.temperature_c, safety=safety_for(()))
+
+    @router.get("/both")
+    async def both_by_address() -> Reply:
+        return Reply(temperature_c=20, safety=safety_for(()))
+
     @router.get("/twin")
     async def ask_by_address(temperature_c: Annotated[Finite, Query(le=100)], fault: str = "") -> Reply:
         if fault == "converge":
@@ -231,6 +239,7 @@ def test_nothing_here_and_wrong_method():
     refused(answer, 405, "method-not-allowed")
     assert answer.headers["allow"] == "GET, HEAD"
     assert provoke("GET", "/v1/ask").headers["allow"] == "POST"
+    assert provoke("PUT", "/v1/both").headers["allow"] == "GET, HEAD, POST"  # two routes at one address
 
 
 @pytest.mark.parametrize("chunked", [False, True])
