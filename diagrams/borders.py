@@ -52,7 +52,7 @@ class Strip:
     """A two-phase region and its borders; tie lines reach from `left` to `right`.
 
     `edge_left` and `edge_right` are the borders of the polygon itself: they differ from the tie line's ends
-    only where the frame cuts a line compound off.
+    only where the frame cuts tie lines off.
     """
 
     region: Region
@@ -101,9 +101,12 @@ def _strip(region: Region, frame: tuple[float, float]) -> Strip:
     edges = _split(region.polygon)
     ends = []
     for phase, edge, side in zip(region.phases, edges, frame, strict=True):
-        wt = region.beyond_wt.get(phase)
+        wt, line = region.beyond_wt.get(phase), region.beyond_line.get(phase)
         on_frame = all(x == side for x in edge.x)
-        ends.append(Border([(wt, edge.t[0]), (wt, edge.t[-1])]) if wt is not None and on_frame else edge)
+        if wt is not None and on_frame:
+            ends.append(Border([(wt, edge.t[0]), (wt, edge.t[-1])]))
+        else:
+            ends.append(Border(list(line)) if line is not None else edge)
     return Strip(region, edges[0].t[0], edges[0].t[-1], ends[0], ends[1], *edges)
 
 

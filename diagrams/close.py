@@ -22,6 +22,7 @@ class Band:
     left: tuple[Point, ...]
     right: tuple[Point, ...]
     beyond_wt: Mapping[str, float] = field(default_factory=lambda: MappingProxyType({}))
+    beyond_line: Mapping[str, tuple[Point, ...]] = field(default_factory=lambda: MappingProxyType({}))
 
     def spans(self, temperature_c: float) -> bool:
         """Whether the field exists at a temperature strictly inside its range."""
@@ -54,19 +55,41 @@ def close_regions(
 
 def _region(face: shapely.Polygon, bands: list[Band], single: Single) -> Region:
     inside = face.representative_point()
-    x, t = inside.x, inside.y
+    band, model = _find(bands, inside.x, inside.y)
+    if band is not None:
+        return Region(band.phases, band.kinds, band.models, face, band.beyond_wt, band.beyond_line)
+    if model is None:  # no field that high or low: ask at other heights of the face
+        heights = sorted({t for _, t in face.exterior.coords})
+        chords = (_chord(face, 0.5 * (low + high)) for low, high in pairwise(heights))
+        beside = (_find(bands, x, t)[1] for x, t in chords)
+        model = next((found for found in beside if found is not None), None)
+    name, kind, model = single(face, model)
+    return Region((name,), (kind,), (model,), face)
+
+
+def _find(bands: list[Band], second_wt: float, temperature_c: float) -> tuple[Band | None, str | None]:
+    """The band a point lies in, or else the phase at the facing end of the nearest band, if there is one."""
     nearest: tuple[float, str] | None = None
     for band in bands:
-        if not band.spans(t):
+        if not band.spans(temperature_c):
             continue
-        left, right = band.ends(t)
-        if left < x < right:
-            return Region(band.phases, band.kinds, band.models, face, band.beyond_wt)
-        distance, model = (left - x, band.models[0]) if x <= left else (x - right, band.models[1])
+        left, right = band.ends(temperature_c)
+        if left < second_wt < right:
+            return band, None
+        on_left = second_wt <= left
+        distance = left - second_wt if on_left else second_wt - right
         if nearest is None or distance < nearest[0]:
-            nearest = (distance, model)
-    name, kind, model = single(face, nearest[1] if nearest else None)
-    return Region((name,), (kind,), (model,), face)
+            nearest = (distance, band.models[0 if on_left else 1])
+    return None, nearest[1] if nearest else None
+
+
+def _chord(face: shapely.Polygon, temperature_c: float) -> Point:
+    """The middle of the face's longest stretch at a temperature strictly between two of its vertices."""
+    west, _, east, _ = face.bounds
+    level = shapely.LineString([(west - 1.0, temperature_c), (east + 1.0, temperature_c)])
+    longest = max(shapely.get_parts(shapely.intersection(face, level)), key=shapely.length)
+    middle = longest.interpolate(0.5, normalized=True)
+    return middle.x, middle.y
 
 
 def _at(border: tuple[Point, ...], temperature_c: float) -> float:

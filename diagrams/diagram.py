@@ -17,7 +17,8 @@ RegionKind = Literal["liquid", "solid"]
 class Region:
     """One field of the diagram. `phases`, `kinds` and `models` run alike, left phase first.
 
-    `beyond_wt` gives, for a line compound cut off by the edge of the stored range, its composition.
+    Where the edge of the stored range cuts tie lines off, their true ends are kept: `beyond_wt` gives the
+    composition of a line compound, `beyond_line` the border of a solution as points (wt%, °C), upwards.
     """
 
     phases: tuple[str, ...]
@@ -25,6 +26,9 @@ class Region:
     models: tuple[str, ...]
     polygon: shapely.Polygon
     beyond_wt: Mapping[str, float] = field(default_factory=lambda: MappingProxyType({}))
+    beyond_line: Mapping[str, tuple[tuple[float, float], ...]] = field(
+        default_factory=lambda: MappingProxyType({})
+    )
 
     @cached_property
     def name(self) -> str:

@@ -1,6 +1,6 @@
 """The gate: what every stored diagram must satisfy before it may answer; run in tests and at start."""
 
-from itertools import combinations
+from itertools import combinations, pairwise
 
 import shapely
 
@@ -131,13 +131,26 @@ def _pure_ends(diagram: Diagram, melting_points_c: dict[str, float]) -> list[str
 def _tie_ends(diagram: Diagram) -> list[str]:
     """A two-phase region cut off by the frame must know where its tie lines end."""
     faults = []
+    compounds = {c.second_wt for c in diagram.compounds}
     for region in diagram.regions:
         if len(region.phases) != 2:
             continue
-        for phase in region.beyond_wt:
-            if phase not in region.phases:
-                faults.append(f"{region.name} names {phase} beyond the frame, which it does not hold")
+        known = {*region.beyond_wt, *region.beyond_line}
+        faults += [
+            f"{region.name} names {phase} beyond the frame, which it does not hold"
+            for phase in sorted(known - {*region.phases})
+        ]
+        faults += [
+            f"{region.name} is cut off by the frame, and nothing says where {phase} lies"
+            for phase, side in zip(region.phases, diagram.composition_range_wt, strict=True)
+            if phase not in known and _upright(region.polygon, side) and side not in compounds
+        ]
     for one, two in combinations(diagram.regions, 2):
         if one.phases == two.phases and len(one.phases) == 1 and one.polygon.equals(two.polygon):
             faults.append(f"{one.name} is stored twice")
     return faults
+
+
+def _upright(polygon: shapely.Polygon, second_wt: float) -> bool:
+    """Whether part of the polygon's outline runs straight up at a composition."""
+    return any(a[0] == b[0] == second_wt for a, b in pairwise(polygon.exterior.coords))

@@ -74,6 +74,8 @@ def _region(region: Region) -> str:
     }
     if region.beyond_wt:
         head["beyond_wt"] = dict(region.beyond_wt)
+    if region.beyond_line:
+        head["beyond_line"] = dict(region.beyond_line)
     words = ", ".join(f"{_json(k)}: {_json(v)}" for k, v in head.items())
     ring = ",\n".join(f"    {_json(list(p))}" for p in region.polygon.exterior.coords)
     return f'  {{{words},\n   "polygon": [\n{ring}\n   ]}}'
@@ -114,4 +116,10 @@ def _read_region(document: dict[str, Any]) -> Region:
         models=tuple(document["models"]),
         polygon=shapely.Polygon(document["polygon"]),
         beyond_wt=MappingProxyType(document.get("beyond_wt", {})),
+        beyond_line=MappingProxyType(
+            {
+                phase: tuple((float(wt), float(t)) for wt, t in line)
+                for phase, line in document.get("beyond_line", {}).items()
+            }
+        ),
     )
