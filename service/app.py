@@ -16,12 +16,20 @@ from diagrams.fillers import FILLERS_EDITION
 from service import __version__, docs_page, problems
 from service.middleware import Edge
 from service.openapi import DESCRIPTION, SUMMARY, TAGS, describe_errors
-from service.routes import health, safety
+from service.routes import diagrams, equilibrium, fillers, health, melting, safety, window
 from service.routes.health import Readiness
 from service.safety import safety_edition, safety_for
 from service.settings import Settings, settings_from
 
-ROUTERS = (safety.router, health.router)
+ROUTERS = (
+    diagrams.router,
+    equilibrium.router,
+    melting.router,
+    window.router,
+    fillers.router,
+    safety.router,
+    health.router,
+)
 NO_TELEMETRY: Any = {
     "tracing": False,
     "metrics": False,

@@ -1,0 +1,1 @@
+"""Rules of the workshop, without any web in them."""

@@ -1,0 +1,69 @@
+"""Phases at a point, as answered."""
+
+import numpy as np
+
+from diagrams.files.catalog import catalog
+from diagrams.questions.lever import Equilibrium, PhaseAmount, equilibrium
+from diagrams.questions.locate_many import locate_many
+from service.process.placed import Placed
+from service.safety import safety_for
+from service.schemas.equilibrium import (
+    EquilibriaAnswer,
+    EquilibriaQuestion,
+    EquilibriumAnswer,
+    Phase,
+    State,
+)
+from service.schemas.source import polygon_source
+
+
+def equilibrium_of(subject: Placed, temperature_c: float) -> EquilibriumAnswer:
+    """Phases, amounts and compositions; OutsideData names `temperature_c`."""
+    found = equilibrium(subject.place.diagram, subject.place.second_wt, temperature_c)
+    return EquilibriumAnswer(
+        alloy=subject.shown,
+        temperature_c=temperature_c,
+        field=found.field,
+        phases=[_phase(amount) for amount in found.phases],
+        liquid_mass_fraction=found.liquid_mass_fraction,
+        on_boundary=found.on_boundary,
+        just_below=_state(found.below) if found.below is not None else None,
+        source=subject.source,
+        safety=safety_for(subject.elements, subject.process, temperature_c),
+    )
+
+
+def equilibria_of(question: EquilibriaQuestion) -> EquilibriaAnswer:
+    """Columns of fields and liquid fractions; UnknownDiagram, or InvalidInput for unequal lengths."""
+    diagram = catalog().get(question.diagram)
+    temperatures_c = np.array(question.temperature_c)
+    found = locate_many(diagram, np.array(question.second_wt), temperatures_c)
+    fractions = found.liquid_mass_fraction.astype(object)
+    fractions[found.outside] = None
+    inside = temperatures_c[~found.outside]
+    return EquilibriaAnswer(
+        field=found.fields,
+        liquid_mass_fraction=fractions.tolist(),
+        outside=found.outside.tolist(),
+        source=polygon_source(diagram),
+        safety=safety_for(diagram.elements, None, float(inside.max()) if inside.size else None),
+    )
+
+
+def _phase(amount: PhaseAmount) -> Phase:
+    return Phase(
+        name=amount.name,
+        kind=amount.kind,
+        mass_fraction=amount.mass_fraction,
+        mole_fraction=amount.mole_fraction,
+        composition_wt=amount.composition_wt,
+        composition_at=amount.composition_at,
+    )
+
+
+def _state(found: Equilibrium) -> State:
+    return State(
+        field=found.field,
+        phases=[_phase(amount) for amount in found.phases],
+        liquid_mass_fraction=found.liquid_mass_fraction,
+    )

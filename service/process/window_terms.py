@@ -1,0 +1,136 @@
+"""The single terms of a window: a temperature each, and the reason for it in full."""
+
+from dataclasses import dataclass
+
+from service.process.curves import kept_over, needed_over
+from service.process.placed import Placed
+
+TARGET = "target liquid fraction"
+BRAZING_MINIMUM = "brazing range minimum"
+BRAZING_MAXIMUM = "brazing range maximum"
+
+
+@dataclass(frozen=True)
+class Term:
+    """One bound on a reading, °C."""
+
+    name: str
+    value_c: float
+    reason: str
+
+
+@dataclass(frozen=True)
+class UpperLimit:
+    """A temperature that a part, a board or a base metal must not exceed."""
+
+    name: str
+    limit_c: float
+
+
+@dataclass(frozen=True, eq=False)
+class EarlierJoint:
+    """A joint made before, that this heating must not melt beyond a fraction (0..1); margin in °C."""
+
+    name: str
+    subject: Placed
+    max_liquid_fraction: float = 0.0
+    margin_c: float = 0.0
+
+
+def target_term(filler: Placed, fraction: float, superheat_c: float, tolerance_c: float) -> Term:
+    """Hot enough for the liquid fraction even at the least favourable composition in tolerance."""
+    found = needed_over(filler.place, fraction)
+    value_c = found.highest + superheat_c + tolerance_c
+    reason = (
+        f"{label(filler)} is {_reached(fraction)} liquid from {found.nominal:.2f} °C on; "
+        f"{_at_worst(filler, 'from', found.highest, found.highest_at_wt)} ({_data(filler)}). "
+        f"Plus superheat {superheat_c:g} °C and sensor tolerance {tolerance_c:g} °C: {value_c:.2f} °C."
+    )
+    return Term(TARGET, value_c, reason)
+
+
+def limit_term(limit: UpperLimit, tolerance_c: float) -> Term:
+    """A named limit, lowered by what the sensor may miss."""
+    value_c = limit.limit_c - tolerance_c
+    reason = (
+        f"{limit.name} may reach {limit.limit_c:g} °C. Minus sensor tolerance {tolerance_c:g} °C: "
+        f"{value_c:.2f} °C."
+    )
+    return Term(limit.name, value_c, reason)
+
+
+def practice_terms(filler: Placed, tolerance_c: float) -> tuple[list[Term], list[Term]]:
+    """The ends of the brazing range that the standard gives this filler, as lower and as upper term.
+
+    The lower end counts too: a filler that is molten may still not flow (BNi-6, BCu-1), and one of a wide
+    melting range is by practice brazed before all of it is liquid, which is for the target fraction to say.
+    It stands as it is printed, without superheat, which the range has in it. Solders have no such range.
+    """
+    row = filler.alloy.filler
+    if row is None or row.brazing_range_c is None:
+        return [], []
+    low_c, high_c = row.brazing_range_c
+    said = (
+        f"The filler table gives {row.name} a brazing range of {low_c:g} to {high_c:g} °C ({row.source}; "
+        f"{row.how}): guidance from practice, left out if the alloy is given by composition."
+    )
+    least_c, most_c = low_c + tolerance_c, high_c - tolerance_c
+    return (
+        [
+            Term(
+                BRAZING_MINIMUM,
+                least_c,
+                f"{said} Plus sensor tolerance {tolerance_c:g} °C: {least_c:.2f} °C.",
+            )
+        ],
+        [
+            Term(
+                BRAZING_MAXIMUM, most_c, f"{said} Minus sensor tolerance {tolerance_c:g} °C: {most_c:.2f} °C."
+            )
+        ],
+    )
+
+
+def remelting_term(joint: EarlierJoint, tolerance_c: float) -> list[Term]:
+    """The highest temperature an earlier joint stands; none if it may melt altogether."""
+    if joint.max_liquid_fraction >= 1.0:
+        return []
+    found = kept_over(joint.subject.place, joint.max_liquid_fraction)
+    value_c = found.lowest - joint.margin_c - tolerance_c
+    reason = (
+        f"{joint.name} ({label(joint.subject)}) stays {_kept(joint.max_liquid_fraction)} up to "
+        f"{found.nominal:.2f} °C; {_at_worst(joint.subject, 'up to', found.lowest, found.lowest_at_wt)} "
+        f"({_data(joint.subject)}). Minus margin {joint.margin_c:g} °C and sensor tolerance {tolerance_c:g} "
+        f"°C: {value_c:.2f} °C."
+    )
+    return [Term(joint.name, value_c, reason)]
+
+
+def label(subject: Placed) -> str:
+    """The alloy as people call it."""
+    alloy = subject.alloy
+    return alloy.designation or "".join(f"{el}{wt:.4g}" for el, wt in alloy.composition_wt.items())
+
+
+def _reached(fraction: float) -> str:
+    return "all" if fraction == 1.0 else f"at least {100 * fraction:.4g} %"
+
+
+def _kept(fraction: float) -> str:
+    return "wholly solid" if fraction == 0.0 else f"at most {100 * fraction:.4g} % liquid"
+
+
+def _at_worst(subject: Placed, preposition: str, temperature_c: float, at_wt: float) -> str:
+    found = subject.place
+    if not subject.has_tolerance:
+        return f"no tolerance is known, {found.second_wt:.4g} wt% {subject.second} is taken as it is"
+    after = " on" if preposition == "from" else ""
+    return (
+        f"at worst within {found.low_wt:.4g} to {found.high_wt:.4g} wt% {subject.second}, at {at_wt:.4g} "
+        f"wt%, {preposition} {temperature_c:.2f} °C{after}"
+    )
+
+
+def _data(subject: Placed) -> str:
+    diagram = subject.place.diagram
+    return f"diagram {diagram.id}, edition {diagram.edition}"

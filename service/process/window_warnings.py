@@ -1,0 +1,83 @@
+"""What to mind about a window that is right as far as it goes."""
+
+from collections.abc import Iterable, Sequence
+from dataclasses import dataclass
+
+from diagrams.questions.melting import melting_curve
+from service.process.curves import kept_over, liquid_up_to
+from service.process.placed import Placed
+from service.process.window_terms import EarlierJoint, Term, label
+
+_JUMP = 1e-6  # liquid fraction; less is no melting at once
+
+
+@dataclass(frozen=True)
+class Warned:
+    """One thing to mind; `code` is steady, `text` is for people."""
+
+    code: str
+    text: str
+
+
+def warnings_of(
+    filler: Placed,
+    joints: Sequence[EarlierJoint],
+    upper: Sequence[Term],
+    *,
+    target_liquid_fraction: float,
+    sensor_tolerance_c: float,
+    solidus_c: float,
+) -> tuple[Warned, ...]:
+    """All warnings, in a steady order."""
+    found = []
+    if target_liquid_fraction < 1.0:
+        share = f"{100 * target_liquid_fraction:.4g} %"
+        text = f"The filler need only be {share} liquid: the rest may stay behind as a skull."
+        found.append(Warned("partly-liquid", text))
+    if not upper:
+        text = (
+            "No upper limit was given and none is known: the window is open above. Parts, base metals, flux "
+            "and filler all have one; give it as upper_limits."
+        )
+        found.append(Warned("no-upper-limit", text))
+    for term in upper:
+        if term.value_c < solidus_c:
+            text = f"“{term.name}” allows {term.value_c:.2f} °C; the filler's solidus is {solidus_c:.2f} °C."
+            found.append(Warned("limit-below-solidus", text))
+    for joint in joints:
+        found += _melting_at_once(joint, sensor_tolerance_c)
+    found += [Warned("from-memory", text) for text in _remembered([filler, *(j.subject for j in joints)])]
+    return tuple(found)
+
+
+def _melting_at_once(joint: EarlierJoint, tolerance_c: float) -> Iterable[Warned]:
+    """An earlier joint whose bound stands on a temperature where much of it melts at once."""
+    if joint.max_liquid_fraction >= 1.0 or joint.margin_c + tolerance_c > 0.0:
+        return
+    place = joint.subject.place
+    limit = kept_over(place, joint.max_liquid_fraction)
+    curve = melting_curve(place.diagram, limit.lowest_at_wt)
+    below, above = liquid_up_to(curve, limit.lowest), curve.liquid_fraction(limit.lowest)
+    if below is not None and above - below > _JUMP:
+        yield Warned(
+            "melts-at-once",
+            f"At {limit.lowest:.2f} °C {joint.name} goes from {100 * below:.3g} % to {100 * above:.3g} % "
+            f"liquid at once, and neither margin_c nor sensor_tolerance_c keeps a distance from it.",
+        )
+
+
+def _remembered(subjects: Iterable[Placed]) -> list[str]:
+    """What rests on values written down from memory, each once."""
+    texts: dict[str, None] = {}
+    for subject in subjects:
+        diagram, row = subject.place.diagram, subject.alloy.filler
+        if any(source.how == "from memory" for source in diagram.sources):
+            texts[f"The diagram {diagram.id} rests on values from memory: guidance, no claim."] = None
+        if row is None:
+            continue
+        limits = subject.has_tolerance and subject.tolerance_field != "tolerance_wt"
+        if limits and "from memory" in row.limits_source:
+            texts[f"The tolerance of {label(subject)} stands in the table from memory."] = None
+        if row.brazing_range_c is not None and "from memory" in f"{row.how} {row.notes}":
+            texts[f"The brazing range of {label(subject)} stands in the table from memory."] = None
+    return list(texts)

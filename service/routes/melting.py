@@ -1,0 +1,41 @@
+"""Where an alloy begins and ends to melt."""
+
+from typing import Annotated
+
+from fastapi import Body
+
+from service.process.melting import melting_of
+from service.process.placed import placed, placed_text
+from service.routes.parameters import AlloyText
+from service.routes.strict import new_router
+from service.schemas.melting import MeltingAnswer, MeltingQuestion
+
+router = new_router("Melting")
+
+EXAMPLES = {
+    "tin-lead": {
+        "summary": "Sn60Pb40 with its standard's tolerance, and the liquid fraction at two temperatures",
+        "value": {"alloy": {"designation": "Sn60Pb40"}, "temperatures_c": [185, 188]},
+    },
+    "own tolerance": {
+        "summary": "A silver–copper braze with a tolerance of its own",
+        "value": {"alloy": {"composition_wt": {"Ag": 60, "Cu": 40}, "tolerance_wt": {"Ag": 1}}},
+    },
+    "phosphorus": {"summary": "A copper–phosphorus braze", "value": {"alloy": {"designation": "CuP 182"}}},
+}
+
+
+@router.post("/melting", summary="Melting range and curve")
+def ask_melting(question: Annotated[MeltingQuestion, Body(openapi_examples=EXAMPLES)]) -> MeltingAnswer:
+    """Tell where an alloy begins and ends to melt, with the extremes over its composition tolerance.
+
+    The curve gives the liquid fraction in between, at equilibrium. For a designation the figures its
+    standard prints stand beside it.
+    """
+    return melting_of(placed(question.alloy), question.temperatures_c)
+
+
+@router.get("/melting", summary="Melting range and curve, by address line")
+def get_melting(alloy: AlloyText) -> MeltingAnswer:
+    """Give the same answer as `POST /v1/melting`, for an alloy in one string."""
+    return melting_of(placed_text(alloy), where="")

@@ -1,0 +1,176 @@
+"""The temperature window of a joint on the wire."""
+
+from typing import Annotated
+
+from pydantic import BaseModel, ConfigDict, Field
+
+from service.schemas.alloy import AlloyAsked, AlloyUsed
+from service.schemas.base import Answer, AnswerModel, StrictModel
+from service.schemas.melting import TemperatureSpan
+from service.schemas.source import SourceUsed
+
+MOST_LIMITS = 100
+MOST_JOINTS = 30
+
+Name = Annotated[str, Field(min_length=1, max_length=100)]
+Difference = Annotated[float, Field(ge=0, le=1000)]
+Temperature = Annotated[float, Field(ge=-273.15, le=5000)]
+Target = Annotated[float, Field(gt=0, le=1)]
+
+_TARGET = (
+    "Share of the filler's mass that must be liquid at the coldest joint, above 0 to 1; 1 for a joint that "
+    "has to flow and fill, less for one that is wiped or pressed."
+)
+_SUPERHEAT = "How far above that temperature the coldest joint has to get, °C; 15 to 30 is usual in reflow."
+_SENSOR = "By how much a reading may differ from the true temperature, either way, °C."
+_SPREAD = "By how much the hottest joint lies above the coldest, °C."
+
+
+class LimitAsked(StrictModel):
+    """A temperature that a part, a board or a base metal must not exceed."""
+
+    name: Name = Field(
+        description="Your name for it; no two may be alike.", examples=["Electrolytic capacitor"]
+    )
+    limit_c: Temperature = Field(description="Highest true temperature allowed, °C.", examples=[245])
+
+
+class JointAsked(StrictModel):
+    """A joint made before, which this heating must not melt."""
+
+    name: Name = Field(description="Your name for it; no two may be alike.", examples=["Terminal lug"])
+    alloy: AlloyAsked
+    max_liquid_fraction: float = Field(
+        default=0.0,
+        ge=0,
+        le=1,
+        description="Share of its mass that may become liquid, 0 to 1; 0: it must not begin to melt; 1: it "
+        "may melt altogether and sets no limit.",
+    )
+    margin_c: Difference = Field(
+        default=0.0, description="How far it has to stay below that temperature, °C."
+    )
+
+
+class WindowQuestion(StrictModel):
+    """A joint to be made: its filler, and all that bounds its temperature."""
+
+    alloy: AlloyAsked = Field(description="The filler.")
+    target_liquid_fraction: Target = Field(description=_TARGET)
+    superheat_c: Difference = Field(default=0.0, description=_SUPERHEAT)
+    sensor_tolerance_c: Difference = Field(default=0.0, description=_SENSOR)
+    spread_c: Difference = Field(default=0.0, description=_SPREAD)
+    upper_limits: list[LimitAsked] = Field(
+        default=[], max_length=MOST_LIMITS, description="Limits of parts, boards and base metals."
+    )
+    earlier_joints: list[JointAsked] = Field(
+        default=[], max_length=MOST_JOINTS, description="Joints made before that must hold."
+    )
+
+
+class WindowAddress(BaseModel):
+    """The simple fields of a window, as they stand in an address line."""
+
+    model_config = ConfigDict(extra="forbid", allow_inf_nan=False, frozen=True)
+
+    alloy: str = Field(
+        min_length=1,
+        max_length=200,
+        description="The filler: a designation (`Sn63Pb37`, `BAg-8`), or element symbols with mass percent "
+        "where one element may be left open and takes the balance (`Sn60Pb`).",
+        examples=["Sn63Pb37"],
+    )
+    target_liquid_fraction: Target = Field(description=_TARGET, examples=[1])
+    superheat_c: Difference = Field(default=0.0, description=_SUPERHEAT)
+    sensor_tolerance_c: Difference = Field(default=0.0, description=_SENSOR)
+    spread_c: Difference = Field(default=0.0, description=_SPREAD)
+    limit_c: Temperature | None = Field(
+        default=None,
+        description="One upper limit, °C, which the answer names `limit`. For more, and for earlier joints, "
+        "POST.",
+    )
+
+
+class TermShown(AnswerModel):
+    """One bound on a reading."""
+
+    name: str
+    value_c: float = Field(description="The bound, °C, sensor tolerance included.")
+    reason: str = Field(
+        description="How it comes about: composition, data and edition, tolerance, additions."
+    )
+
+
+class CollisionShown(AnswerModel):
+    """The two terms that leave no window."""
+
+    lower: str = Field(description="Name of the lower term.")
+    upper: str = Field(description="Name of the upper term.")
+    by_c: float = Field(description="Degrees missing between them, the spread included, °C.")
+    text: str
+
+
+class LiquidReached(AnswerModel):
+    """Share of an earlier joint's mass that is liquid, 0 to 1."""
+
+    nominal: float | None = Field(
+        description="At its nominal composition, the reading taken as true; null where no data reach."
+    )
+    worst: float | None = Field(
+        description="At the least favourable composition in tolerance, the sensor reading low by its "
+        "tolerance."
+    )
+
+
+class JointShown(AnswerModel):
+    """What an earlier joint goes through."""
+
+    name: str
+    alloy: AlloyUsed
+    max_liquid_fraction: float
+    margin_c: float
+    starts_to_melt_c: TemperatureSpan = Field(description="Its solidus, °C.")
+    liquid_mass_fraction: LiquidReached | None = Field(
+        description="How much of it is liquid if the hottest joint reads maximum_peak_c; where much melts at "
+        "that very temperature, the value just below. Null without a maximum."
+    )
+    source: SourceUsed
+
+
+class WarningShown(AnswerModel):
+    """One thing to mind."""
+
+    code: str = Field(
+        description="`partly-liquid`, `no-upper-limit`, `limit-below-solidus`, `melts-at-once` or "
+        "`from-memory`."
+    )
+    text: str
+
+
+class WindowAnswer(Answer):
+    """How hot the joint has to read, how hot it may read, and what decides."""
+
+    alloy: AlloyUsed
+    minimum_peak_c: float = Field(description="The coldest joint must read at least this, °C.")
+    maximum_peak_c: float | None = Field(
+        description="The hottest joint may read at most this, °C; null if nothing bounds it, which a warning "
+        "tells."
+    )
+    width_c: float | None = Field(
+        description="Maximum minus minimum minus spread, °C: what is left for the process to wander. "
+        "Negative if there is no window: so many degrees are missing. Null without a maximum."
+    )
+    feasible: bool = Field(description="Whether coldest and hottest joint can be right at once.")
+    setpoint_c: float | None = Field(
+        description="Aim the mean of the coldest and the hottest reading at this, °C: the middle between "
+        "minimum and maximum, half the width away from either failure. Null if there is no window or no "
+        "maximum."
+    )
+    lower_terms: list[TermShown] = Field(description="All lower bounds; the highest decides.")
+    upper_terms: list[TermShown] = Field(description="All upper bounds; the lowest decides.")
+    binding_lower: str = Field(description="Name of the lower term that decides.")
+    binding_upper: str | None = Field(description="Name of the upper term that decides.")
+    collision: CollisionShown | None = Field(description="What collides, if there is no window.")
+    earlier_joints: list[JointShown]
+    warnings: list[WarningShown]
+    source: SourceUsed
