@@ -16,6 +16,7 @@ from diagrams.fillers import FILLERS_EDITION
 from service import __version__, docs_page, problems
 from service.middleware import Edge
 from service.openapi import DESCRIPTION, SUMMARY, TAGS, describe_errors
+from service.process.fillers import covered
 from service.routes import diagrams, equilibrium, fillers, health, melting, safety, window
 from service.routes.health import Readiness
 from service.safety import safety_edition, safety_for
@@ -41,6 +42,7 @@ NO_TELEMETRY: Any = {
 
 def load_all() -> Mapping[str, str]:
     """Load every stored set of data and return its edition; what is loaded stays loaded."""
+    covered()  # places every filler on its diagram, so that no question waits for that
     return {"diagrams": catalog().edition, "fillers": FILLERS_EDITION, "safety": safety_edition()}
 
 
