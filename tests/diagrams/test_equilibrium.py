@@ -1,4 +1,4 @@
-"""The minimiser against brute force: a linear programme over a composition grid that closes in on the answer."""
+"""The minimiser against brute force: a linear programme over a grid, then every pair, closing in."""
 
 import numpy as np
 import pytest
@@ -26,9 +26,7 @@ def brute_force(system: System, x: float, temperature_k: float) -> Points:
     assert len(found) == 2
     phases = {p.model: p for p in system.phases}
     step = 1.0 / (GRID - 1)
-    spans = [
-        (v, v) if isinstance(phases[m], Compound) else (v - 3 * step, v + 3 * step) for m, v, _ in found
-    ]
+    spans = [(v, v) if isinstance(phases[m], Compound) else (v - 3 * step, v + 3 * step) for m, v, _ in found]
     for _ in range(ROUNDS):
         grids, energies = [], []
         for (model, _, _), (low, high) in zip(found, spans, strict=True):
@@ -37,8 +35,8 @@ def brute_force(system: System, x: float, temperature_k: float) -> Points:
                 grids.append(np.array([phase.x]))
                 energies.append(np.array([phase.energy(temperature_k)]))
                 continue
-            low, high = max(low, phase.window[0]), min(high, phase.window[1])
-            grids.append(np.linspace(low, high, PAIR))
+            inside = max(low, phase.window[0]), min(high, phase.window[1])
+            grids.append(np.linspace(*inside, PAIR))
             energies.append(phase.at(temperature_k).energies(grids[-1]))
         left, right = grids[0][:, None], grids[1][None, :]
         right_share = (x - left) / (right - left)
@@ -49,7 +47,8 @@ def brute_force(system: System, x: float, temperature_k: float) -> Points:
         share = float(right_share[i, j])
         found = [(found[0][0], best[0], 1 - share), (found[1][0], best[1], share)]
         spans = [
-            (v - 5 * (g[-1] - g[0]) / PAIR, v + 5 * (g[-1] - g[0]) / PAIR) for v, g in zip(best, grids, strict=True)
+            (v - 5 * (g[-1] - g[0]) / PAIR, v + 5 * (g[-1] - g[0]) / PAIR)
+            for v, g in zip(best, grids, strict=True)
         ]
     return found
 

@@ -1,15 +1,18 @@
-"""Phase models: derivatives against differences, energies against the fixed points of the temperature scale."""
+"""Phase models: derivatives against differences, energies against fixed points of the temperature scale."""
 
 import numpy as np
 import pytest
 
 from diagrams.errors import DataFault
-from diagrams.files.assessments import assessment_ids, melting_points_c, read_assessment
+from diagrams.files.assessments import assessment_from, assessment_ids, melting_points_c, read_assessment
 from diagrams.gibbs import Solution, logit
 from tests.truth import truth
 
 SOLUTIONS = [
-    (i, phase) for i in assessment_ids() for phase in read_assessment(i).system.phases if isinstance(phase, Solution)
+    (i, phase)
+    for i in assessment_ids()
+    for phase in read_assessment(i).system.phases
+    if isinstance(phase, Solution)
 ]
 
 
@@ -61,8 +64,6 @@ def test_melting_points_are_those_of_the_temperature_scale() -> None:
 
 
 def test_unknown_terms_are_refused() -> None:
-    from diagrams.files.assessments import assessment_from
-
     document = {
         "id": "pb-sn",
         "elements": ["Pb", "Sn"],

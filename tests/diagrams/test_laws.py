@@ -1,5 +1,7 @@
 """Laws that hold for every stored diagram, whatever its data."""
 
+from itertools import pairwise
+
 import numpy as np
 import pytest
 
@@ -107,7 +109,7 @@ def test_liquid_fraction_rises_on_heating_unless_solubility_is_retrograde(diagra
     rng = np.random.default_rng(11)
     for wt in [low, high, *rng.uniform(low, high, 60).tolist()]:
         points = melting_curve(diagram, wt).points
-        for (t0, f0), (t1, f1) in zip(points, points[1:], strict=False):
+        for (t0, f0), (t1, f1) in pairwise(points):
             assert t1 >= t0
             assert 0.0 <= f0 <= 1.0
             if f1 < f0 - 1e-9:
@@ -117,7 +119,11 @@ def test_liquid_fraction_rises_on_heating_unless_solubility_is_retrograde(diagra
 def border_turns_back(diagram_id: str, wt: float, t0: float, t1: float) -> bool:
     """Whether the tie line over this stretch moves so that the lever rule gives less liquid when hotter."""
     for strip in Borders(catalog().get(diagram_id)).strips:
-        if sorted(strip.region.kinds) != ["liquid", "solid"] or t0 < strip.low_c - 1e-9 or t1 > strip.high_c + 1e-9:
+        if (
+            sorted(strip.region.kinds) != ["liquid", "solid"]
+            or t0 < strip.low_c - 1e-9
+            or t1 > strip.high_c + 1e-9
+        ):
             continue
         liquid, solid = (
             (strip.left, strip.right) if strip.region.kinds[0] == "liquid" else (strip.right, strip.left)

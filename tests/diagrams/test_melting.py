@@ -100,7 +100,9 @@ def test_extremes_over_a_tolerance(diagram_id: str, nominal: float, low: float, 
 
 @pytest.mark.parametrize(("diagram_id", "nominal", "low", "high"), INTERVALS)
 @pytest.mark.parametrize("fraction", [0.2, 0.8])
-def test_extremes_of_a_fraction(diagram_id: str, nominal: float, low: float, high: float, fraction: float) -> None:
+def test_extremes_of_a_fraction(
+    diagram_id: str, nominal: float, low: float, high: float, fraction: float
+) -> None:
     diagram = catalog().get(diagram_id)
     scan = [melting_curve(diagram, wt).stays_above(fraction) for wt in np.linspace(low, high, 301)]
     found = extremes_over(diagram, nominal, low, high, fraction, lambda c: c.stays_above(fraction))
@@ -144,7 +146,7 @@ def test_impossible_questions_are_refused() -> None:
         curve.liquid_fractions(np.array([100.0, 1e4]))
     with pytest.raises(OutsideData):
         melting_curve(diagram, 101.0)
-    with pytest.raises(OutsideData, match="tolerance|data"):
+    with pytest.raises(OutsideData, match="data"):
         liquidus_over(catalog().get("cu-sn"), 61.0, 59.0, 62.0)
     with pytest.raises(InvalidComposition):
         alloy_from_wt({"Sn": 50, "Pb": 40})

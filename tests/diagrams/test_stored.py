@@ -1,6 +1,7 @@
 """Stored diagrams: equal to what is rebuilt, past the gate, and true to the minimiser everywhere."""
 
 from concurrent.futures import ProcessPoolExecutor
+from itertools import pairwise
 from types import MappingProxyType
 
 import numpy as np
@@ -20,14 +21,14 @@ from diagrams.rebuild import build_text, buildable_ids
 from diagrams.units import second_wt_to_x, x_to_second_wt
 from tests.diagrams.random_points import random_points
 
-PROMISED = (
-    "pb-sn ag-cu ag-sn cu-sn bi-sn au-sn au-ge au-si al-si cu-p cu-zn ag-zn sn-zn in-sn cu-ni au-ni au-cu ni-p "
-    "bi-pb ag-pb sb-sn"
-).split()
+PROMISED = {
+    *("pb-sn", "ag-cu", "ag-sn", "cu-sn", "bi-sn", "au-sn", "au-ge", "au-si", "al-si", "cu-p", "cu-zn"),
+    *("ag-zn", "sn-zn", "in-sn", "cu-ni", "au-ni", "au-cu", "ni-p", "bi-pb", "ag-pb", "sb-sn"),
+}
 
 
 def test_all_promised_diagrams_are_stored() -> None:
-    assert set(PROMISED) <= set(stored_ids())
+    assert set(stored_ids()) >= PROMISED
     assert stored_ids() == buildable_ids()
     assert tuple(catalog().diagrams) == stored_ids()
 
@@ -73,7 +74,9 @@ def test_polygons_agree_with_the_minimiser(diagram_id: str) -> None:
             ends = [x_to_second_wt(a.x, first, second) for a in expected]
             if len(expected) != len(reading.phases):
                 unlike += 1
-                border = min(abs(wt - e) for tie in isotherm.ties for e in tie_wt(tie.left, tie.right, diagram))
+                border = min(
+                    abs(wt - e) for tie in isotherm.ties for e in tie_wt(tie.left, tie.right, diagram)
+                )
                 assert border < 0.02, (wt, t, reading.field)  # only so near a border may they differ
                 continue
             assert [a.phase.kind for a in expected] == [p.kind for p in reading.phases], (wt, t)
@@ -103,7 +106,7 @@ def test_invariants_are_exact(diagram_id: str) -> None:
         assert pairs(t - 0.01) != pairs(t + 0.01), diagram.invariants[k]
     low, high = diagram.temperature_range_c
     marks = [low, *temperatures, high]
-    for a, b in zip(marks, marks[1:], strict=False):
+    for a, b in pairwise(marks):
         if b - a > 0.2:
             inner = [pairs(t) for t in np.linspace(a + 0.1, b - 0.1, 5)]
             assert all(p == inner[0] for p in inner), (a, b)
@@ -144,7 +147,7 @@ def test_gate_refuses_each_fault() -> None:
     melting = melting_points_c()
     check_diagram(good, melting)
     regions = list(good.regions)
-    moved = shapely.transform(regions[0].polygon, lambda c: c + [0.0, 0.001])
+    moved = shapely.transform(regions[0].polygon, lambda c: c + np.array([0.0, 0.001]))
     faults = {
         "overlap": [with_polygon(regions[0], moved), *regions[1:]],
         "gap": regions[1:],

@@ -116,7 +116,7 @@ def test_taught_points() -> None:
 
 
 def test_worked_lever_rules() -> None:
-    """Published lever-rule results; their own diagram readings differ from one edition to the next by 2 wt%."""
+    """Published lever-rule results; the readings they start from differ between editions by 2 wt%."""
     answered = 0
     for row in truth("lever_rule"):
         diagram = catalog().get(row["system"])
