@@ -2,6 +2,7 @@
 
 import numpy as np
 
+from diagrams.errors import UnknownDiagram
 from diagrams.files.catalog import catalog
 from diagrams.questions.lever import Equilibrium, PhaseAmount, equilibrium
 from diagrams.questions.locate_many import locate_many
@@ -35,7 +36,11 @@ def equilibrium_of(subject: Placed, temperature_c: float) -> EquilibriumAnswer:
 
 def equilibria_of(question: EquilibriaQuestion) -> EquilibriaAnswer:
     """Columns of fields and liquid fractions; UnknownDiagram, or InvalidInput for unequal lengths."""
-    diagram = catalog().get(question.diagram)
+    try:
+        diagram = catalog().get(question.diagram)
+    except UnknownDiagram as error:
+        error.field = "diagram"
+        raise
     temperatures_c = np.array(question.temperature_c)
     found = locate_many(diagram, np.array(question.second_wt), temperatures_c)
     fractions = found.liquid_mass_fraction.astype(object)
