@@ -17,13 +17,14 @@ from service import __version__, docs_page, problems
 from service.middleware import Edge
 from service.openapi import DESCRIPTION, SUMMARY, TAGS, describe_errors
 from service.process.fillers import covered
-from service.routes import diagrams, equilibrium, fillers, health, melting, safety, window
+from service.routes import diagrams, equilibrium, figures, fillers, health, melting, safety, window
 from service.routes.health import Readiness
 from service.safety import safety_edition, safety_for
 from service.settings import Settings, settings_from
 
 ROUTERS = (
     diagrams.router,
+    figures.router,
     equilibrium.router,
     melting.router,
     window.router,

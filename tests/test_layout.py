@@ -25,7 +25,10 @@ LAYERS = [
     {"elements", "units", "sources", "errors", "tolerances", "reference"},
     {"gibbs", "tie", "events", "equilibrium", "trace"},
     {"diagram", "linework", "reactions", "close", "borders", "section", "fillers", "alloys"},
-    {"files", "questions", "figure"},
+    {
+        "files", "questions", "figure", "figure_labels", "figure_mark", "figure_scales", "figure_sheet",
+        "figure_style", "melting_figure",
+    },  # fmt: skip
     {"fitting", "from_parameters", "from_points", "rebuild"},  # make what is stored; not needed to answer
 ]
 

@@ -1,0 +1,64 @@
+"""Pictures of diagrams and of melting, kept: most are asked for again."""
+
+from functools import lru_cache
+
+from diagrams.diagram import Diagram
+from diagrams.errors import InvalidInput, OutsideData
+from diagrams.figure import draw_diagram
+from diagrams.figure_style import PictureFormat
+from diagrams.melting_figure import Melting, draw_melting
+from service.process.caution import caution_lines
+from service.process.curves import curve_of, kept_over, needed_over
+from service.process.placed import Placed, about
+
+KEPT = 64  # pictures of about 150 kB each
+
+
+def diagram_picture(
+    diagram: Diagram, second_wt: float | None, temperature_c: float | None, form: PictureFormat
+) -> bytes:
+    """The picture of a diagram, with a point if both its values are given.
+
+    Raises InvalidInput if only one is, OutsideData if the point lies beyond the data.
+    """
+    if (second_wt is None) != (temperature_c is None):
+        missing = "second_wt" if second_wt is None else "temperature_c"
+        raise InvalidInput(
+            f"A point needs both values; {missing} is missing.",
+            field=missing,
+            remedy="Give second_wt and temperature_c, or neither.",
+        )
+    try:
+        return _diagram_picture(diagram, second_wt, temperature_c, form)
+    except OutsideData as error:
+        if error.field == "composition_wt":
+            error.field = "second_wt"
+        raise
+
+
+@lru_cache(maxsize=KEPT)
+def _diagram_picture(
+    diagram: Diagram, second_wt: float | None, temperature_c: float | None, form: PictureFormat
+) -> bytes:
+    point = None if second_wt is None or temperature_c is None else (second_wt, temperature_c)
+    return draw_diagram(diagram, caution_lines(diagram.elements), point, form)
+
+
+@lru_cache(maxsize=KEPT)
+def melting_picture(subject: Placed, target: float | None, form: PictureFormat) -> bytes:
+    """The picture of an alloy's melting; OutsideData where its melting range lies beyond the data."""
+    with about(subject):
+        melting = Melting(
+            _name(subject),
+            subject.place.diagram,
+            curve_of(subject.place),
+            kept_over(subject.place, 0.0),
+            needed_over(subject.place, 1.0),
+            None if target is None else (target, needed_over(subject.place, target)),
+        )
+    return draw_melting(melting, caution_lines(subject.elements, subject.process), form)
+
+
+def _name(subject: Placed) -> str:
+    parts = " ".join(f"{el} {wt:.6g}" for el, wt in subject.alloy.composition_wt.items())
+    return f"{subject.alloy.designation} ({parts} wt%)" if subject.alloy.designation else f"{parts} wt%"
