@@ -37,7 +37,8 @@ class Room:
         self._borders = borders
         self._taken: list[shapely.Geometry] = []
         self._thin: list[shapely.Geometry] = []
-        shapely.prepare(borders)
+        self._plot = shapely.box(2.0, 2.0, width - 2.0, height - 2.0)  # a little off the frame
+        shapely.prepare([borders, self._plot])
 
     def take(self, x: float, y: float, width: float, height: float) -> None:
         """Keep a box about this centre free of labels."""
@@ -125,14 +126,16 @@ class Room:
         return found
 
     def _free(self, boxes: NDArray[np.object_]) -> NDArray[np.bool_]:
-        free: NDArray[np.bool_] = shapely.contains(shapely.box(2, 2, self.width - 2, self.height - 2), boxes)
+        free: NDArray[np.bool_] = shapely.contains(self._plot, boxes)
         for taken in (*self._taken, *self._thin):
             free &= ~shapely.intersects(boxes, taken)
         return free
 
-    def _crossings(self, boxes: NDArray[np.object_]) -> NDArray[np.int64]:
-        cut = shapely.intersection(boxes, self._borders)
-        count: NDArray[np.int64] = np.where(shapely.is_empty(cut), 0, shapely.get_num_geometries(cut))
+    def _crossings(self, shapes: NDArray[np.object_]) -> NDArray[np.int64]:
+        """How many border pieces run through each shape; most run through none."""
+        count = np.zeros(len(shapes), dtype=np.int64)
+        hit = shapely.intersects(self._borders, shapes)
+        count[hit] = shapely.get_num_geometries(shapely.intersection(shapes[hit], self._borders))
         return count
 
     def _keep(self, x: Floats, y: Floats, width: float, height: float, cost: Floats) -> tuple[float, float]:

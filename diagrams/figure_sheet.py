@@ -72,6 +72,7 @@ class Sheet:
         step = FOOT_SIZE * LINE
         self._caution_top = 14.0 + step * len(self._caution) + 5.0
         self._origin_top = self._caution_top + 6.0 + step * len(self._origin)
+        self.title = f"{title}, {subtitle}"
         self.plot_height = height
         self.bottom = self._origin_top + BELOW_PLOT
         self.height = self.bottom + height + TOP
@@ -107,7 +108,7 @@ class Sheet:
 
     def finished(self, form: PictureFormat) -> bytes:
         """The picture."""
-        return to_bytes(self.figure, form)
+        return to_bytes(self.figure, form, self.title)
 
     def _foot(self) -> None:
         step = FOOT_SIZE * LINE

@@ -74,7 +74,8 @@ def _library() -> Any:
         {
             "svg.hashsalt": "meltband",  # the same picture gives the same bytes
             "svg.fonttype": "none",  # text stays text: it can be searched, read aloud and copied
-            "font.family": _FAMILY,
+            "font.family": [_FAMILY, "sans-serif"],
+            "font.sans-serif": [_FAMILY],
             "text.hinting": "none",  # letters keep their true widths, on screens and on paper alike
             "text.color": INK,
             "text.parse_math": False,
@@ -104,10 +105,10 @@ def patch(corners: list[list[float]], paper: str, edge: str = "none", line: floa
     return filled
 
 
-def to_bytes(figure: "Figure", form: PictureFormat) -> bytes:
-    """The finished picture; the same figure gives the same bytes."""
+def to_bytes(figure: "Figure", form: PictureFormat, title: str) -> bytes:
+    """The finished picture with its title for screen readers; the same figure gives the same bytes."""
     sheet = io.BytesIO()
-    metadata = {"Date": None, "Creator": None} if form == "svg" else {"Software": None}
+    metadata = {"Title": title, **({"Date": None, "Creator": None} if form == "svg" else {"Software": None})}
     with _drawing:  # the library keeps fonts and settings in common
         figure.savefig(sheet, format=form, metadata=metadata)
     return sheet.getvalue()

@@ -28,7 +28,7 @@ LAYERS = [
     {
         "files", "questions", "figure", "figure_labels", "figure_mark", "figure_scales", "figure_sheet",
         "figure_style", "melting_figure",
-    },  # fmt: skip
+    },
     {"fitting", "from_parameters", "from_points", "rebuild"},  # make what is stored; not needed to answer
 ]
 
