@@ -28,8 +28,11 @@ def diagram_picture(
             field=missing,
             remedy="Give second_wt and temperature_c, or neither.",
         )
+    point = None
+    if second_wt is not None and temperature_c is not None:
+        point = (second_wt + 0.0, temperature_c + 0.0)  # −0 and 0 are one picture
     try:
-        return _diagram_picture(diagram, second_wt, temperature_c, form)
+        return _diagram_picture(diagram, point, form)
     except OutsideData as error:
         if error.field == "composition_wt":
             error.field = "second_wt"
@@ -37,10 +40,7 @@ def diagram_picture(
 
 
 @lru_cache(maxsize=KEPT)
-def _diagram_picture(
-    diagram: Diagram, second_wt: float | None, temperature_c: float | None, form: PictureFormat
-) -> bytes:
-    point = None if second_wt is None or temperature_c is None else (second_wt, temperature_c)
+def _diagram_picture(diagram: Diagram, point: tuple[float, float] | None, form: PictureFormat) -> bytes:
     return draw_diagram(diagram, caution_lines(diagram.elements), point, form)
 
 
