@@ -43,6 +43,15 @@ def test_each_condition_chooses_what_it_says(ask, conditions, meets):
     assert names(ask, **conditions) == expected
 
 
+def test_what_a_standard_allows_counts_as_held_where_it_is_barred(ask):
+    with_tin = set(names(ask)) - set(names(ask, without="Sn"))
+    rod = ask("GET", "/v1/fillers/RBCuZn-A").json()
+    assert "Sn" not in rod["composition_wt"]
+    assert rod["limits_wt"]["Sn"]["highest"] > 0
+    assert "RBCuZn-A" in with_tin
+    assert "RBCuZn-A" not in names(ask, contains="Sn")
+
+
 def test_what_is_covered_can_be_asked_and_what_is_not_cannot(ask):
     covered, open_ = names(ask, covered="true"), names(ask, covered="false")
     assert sorted(covered + open_) == sorted(names(ask))
