@@ -3,11 +3,10 @@
 from collections.abc import Iterable, Sequence
 from dataclasses import dataclass
 from itertools import groupby
-from typing import TYPE_CHECKING
+from typing import TYPE_CHECKING, Protocol
 
 import numpy as np
 
-from diagrams.diagram import Diagram
 from diagrams.figure_style import (
     CAUTION,
     CAUTION_PAPER,
@@ -20,6 +19,7 @@ from diagrams.figure_style import (
     to_bytes,
     wrapped,
 )
+from diagrams.sources import Source
 
 if TYPE_CHECKING:
     from matplotlib.axes import Axes
@@ -134,7 +134,27 @@ class Sheet:
         box.set_transform(self.figure.transFigure)
 
 
-def origin_lines(diagram: Diagram) -> list[str]:
+class Origin(Protocol):
+    """Data a picture is drawn from: a diagram, a section or a system."""
+
+    @property
+    def elements(self) -> tuple[str, ...]:
+        """Symbols, sorted."""
+
+    @property
+    def edition(self) -> str:
+        """Edition of the data."""
+
+    @property
+    def sources(self) -> tuple[Source, ...]:
+        """Where they come from."""
+
+    @property
+    def notes(self) -> tuple[str, ...]:
+        """Known weak spots."""
+
+
+def origin_lines(diagram: Origin) -> list[str]:
     """Sources, each with how its value came here, and the known weak spots, as the foot prints them."""
     told = []
     for (how, confidence), sources in groupby(diagram.sources, key=lambda s: (s.how, s.confidence)):

@@ -2,13 +2,13 @@
 
 from collections.abc import Sequence
 from dataclasses import dataclass
-from typing import TYPE_CHECKING
+from itertools import pairwise
+from typing import TYPE_CHECKING, Protocol
 
 import numpy as np
 
-from diagrams.diagram import Diagram
 from diagrams.figure_scales import even
-from diagrams.figure_sheet import Note, Sheet, origin_lines, plot_height
+from diagrams.figure_sheet import Note, Origin, Sheet, origin_lines, plot_height
 from diagrams.figure_style import (
     BORDER,
     FAINT,
@@ -20,8 +20,7 @@ from diagrams.figure_style import (
     both_scales,
     patch,
 )
-from diagrams.questions.melting import MeltingCurve
-from diagrams.questions.melting_range import Extremes
+from diagrams.questions.melter import Curve
 from diagrams.units import celsius_to_fahrenheit
 
 if TYPE_CHECKING:
@@ -32,6 +31,22 @@ SHARES = (0.25, 0.5, 0.75, 0.9, 0.95)
 LIQUID, PARTLY = FIELDS["liquid"][0], FIELDS["liquid solid"][0]
 
 
+class Level(Protocol):
+    """A temperature at the nominal composition and its extremes over the tolerance, °C."""
+
+    @property
+    def nominal(self) -> float:
+        """At the nominal composition."""
+
+    @property
+    def safe_low(self) -> float:
+        """Lowest."""
+
+    @property
+    def safe_high(self) -> float:
+        """Highest."""
+
+
 @dataclass(frozen=True)
 class Melting:
     """What is drawn: the alloy's name, its curve, and solidus and liquidus over its tolerance.
@@ -40,11 +55,11 @@ class Melting:
     """
 
     name: str
-    diagram: Diagram
-    curve: MeltingCurve
-    solidus: Extremes
-    liquidus: Extremes
-    target: tuple[float, Extremes] | None = None
+    origin: Origin
+    curve: Curve
+    solidus: Level
+    liquidus: Level
+    target: tuple[float, Level] | None = None
 
 
 def draw_melting(melting: Melting, caution: Sequence[str], form: PictureFormat = "png") -> bytes:
@@ -53,9 +68,12 @@ def draw_melting(melting: Melting, caution: Sequence[str], form: PictureFormat =
     `caution` stands in a box under the plot, its first line in bold.
     """
     side = _side_notes(melting)
-    first, second = melting.diagram.elements
-    subtitle = f"melting in equilibrium, from the diagram {first}–{second}, edition {melting.diagram.edition}"
-    sheet = Sheet(melting.name, subtitle, origin_lines(melting.diagram), caution, plot_height(side))
+    origin = melting.origin
+    what = "diagram" if len(origin.elements) <= 2 else "system"
+    subtitle = (
+        f"melting in equilibrium, from the {what} {'–'.join(origin.elements)}, edition {origin.edition}"
+    )
+    sheet = Sheet(melting.name, subtitle, origin_lines(origin), caution, plot_height(side))
     axes = sheet.plot()
     low_c, high_c = _range_c(melting)
     _scale(axes, low_c, high_c)
@@ -70,10 +88,10 @@ def draw_melting(melting: Melting, caution: Sequence[str], form: PictureFormat =
 
 def _range_c(melting: Melting) -> tuple[float, float]:
     """The melting range with a margin, inside the data."""
-    low, high = melting.solidus.lowest, melting.liquidus.highest
+    low, high = melting.solidus.safe_low, melting.liquidus.safe_high
     margin = max(6.0, 0.2 * (high - low))
-    pieces = melting.curve.pieces
-    return max(low - margin, pieces[0].low_c), min(high + margin, pieces[-1].high_c)
+    points = melting.curve.points
+    return max(low - margin, points[0][0]), min(high + margin, points[-1][0])
 
 
 def _scale(axes: "Axes", low_c: float, high_c: float) -> None:
@@ -92,23 +110,27 @@ def _scale(axes: "Axes", low_c: float, high_c: float) -> None:
     top.tick_params(direction="out", labelsize=8, colors=FAINT, length=3)
 
 
-def _draw_curve(axes: "Axes", curve: MeltingCurve, low_c: float, high_c: float) -> None:
+def _draw_curve(axes: "Axes", curve: Curve, low_c: float, high_c: float) -> None:
     line: list[tuple[float, float]] = []
-    for piece in curve.pieces:
-        if piece.high_c < low_c or piece.low_c > high_c:
+    for (start_c, first), (end_c, last) in pairwise(curve.points):
+        if end_c < low_c or start_c > high_c:
             continue
-        for t in np.linspace(max(piece.low_c, low_c), min(piece.high_c, high_c), STEPS_A_PIECE):
-            line.append((float(t), 100.0 * piece.at(float(t))))
+        if start_c >= low_c:
+            line.append((start_c, 100.0 * first))
+        inner = np.linspace(max(start_c, low_c), min(end_c, high_c), STEPS_A_PIECE).tolist()
+        line += [(t, 100.0 * curve.liquid_fraction(t)) for t in inner if start_c < t < end_c]
+        if end_c <= high_c:
+            line.append((end_c, 100.0 * last))
     under = [list(point) for point in [(low_c, 0.0), *line, (high_c, 0.0)]]
     axes.set_facecolor(PARTLY)
     axes.add_patch(patch(under, LIQUID)).set_zorder(1)
     axes.plot(*zip(*line, strict=True), color=BORDER, linewidth=1.8, zorder=4)
 
 
-def _draw_level(axes: "Axes", level: Extremes, name: str, colour: str, *, left: bool) -> None:
+def _draw_level(axes: "Axes", level: Level, name: str, colour: str, *, left: bool) -> None:
     """An upright line at a temperature, with the band its tolerance spans."""
-    if level.lowest < level.highest:
-        axes.axvspan(level.lowest, level.highest, color=colour, alpha=0.18, linewidth=0, zorder=2)
+    if level.safe_low < level.safe_high:
+        axes.axvspan(level.safe_low, level.safe_high, color=colour, alpha=0.18, linewidth=0, zorder=2)
     axes.axvline(level.nominal, color=colour, linewidth=1.2, zorder=3)
     axes.annotate(
         f"{name} {level.nominal:.1f} °C",
@@ -124,7 +146,7 @@ def _draw_level(axes: "Axes", level: Extremes, name: str, colour: str, *, left: 
     )
 
 
-def _draw_target(axes: "Axes", fraction: float, reached: Extremes, low_c: float) -> None:
+def _draw_target(axes: "Axes", fraction: float, reached: Level, low_c: float) -> None:
     share = 100.0 * fraction
     axes.plot([low_c, reached.nominal], [share, share], color=MARK, linewidth=1.0, linestyle="--", zorder=5)
     axes.plot([reached.nominal] * 2, [0.0, share], color=MARK, linewidth=1.0, linestyle="--", zorder=5)
@@ -163,8 +185,8 @@ def _side_notes(melting: Melting) -> list[Note]:
     return notes
 
 
-def _level_notes(name: str, level: Extremes, colour: str) -> list[Note]:
+def _level_notes(name: str, level: Level, colour: str) -> list[Note]:
     notes = [Note(f"{name} {both_scales(level.nominal)}", colour=colour)]
-    if level.lowest < level.highest:
-        notes.append(Note(f"over the tolerance {level.lowest:.1f} to {level.highest:.1f} °C"))
+    if level.safe_low < level.safe_high:
+        notes.append(Note(f"over the tolerance {level.safe_low:.1f} to {level.safe_high:.1f} °C"))
     return notes

@@ -22,13 +22,27 @@ Question = Callable[[MeltingCurve], float]
 
 @dataclass(frozen=True)
 class Extremes:
-    """A temperature at the nominal composition and its lowest and highest over the tolerance, with where."""
+    """A temperature at the nominal composition and its lowest and highest over the tolerance, with where.
+
+    `tried` counts the compositions looked at.
+    """
 
     nominal: float
     lowest: float
     highest: float
     lowest_at_wt: float
     highest_at_wt: float
+    tried: int = 1
+
+    @property
+    def safe_low(self) -> float:
+        """The lowest; always known here."""
+        return self.lowest
+
+    @property
+    def safe_high(self) -> float:
+        """The highest; always known here."""
+        return self.highest
 
 
 def solidus_over(diagram: Diagram, nominal_wt: float, low_wt: float, high_wt: float) -> Extremes:
@@ -64,7 +78,7 @@ def extremes_over(
                 remedy=error.remedy,
             ) from error
     lowest, highest = min(found), max(found)
-    return Extremes(nominal, lowest[0], highest[0], lowest[1], highest[1])
+    return Extremes(nominal, lowest[0], highest[0], lowest[1], highest[1], len(found))
 
 
 def _candidates(diagram: Diagram, low_wt: float, high_wt: float, fraction: float) -> list[float]:

@@ -2,11 +2,12 @@
 
 import numpy as np
 
-from diagrams.errors import UnknownDiagram
+from diagrams.errors import OutsideData, UnknownDiagram
 from diagrams.files.catalog import catalog
-from diagrams.questions.lever import Equilibrium, PhaseAmount, equilibrium
+from diagrams.questions.lever import Equilibrium, PhaseAmount
 from diagrams.questions.locate_many import locate_many
-from service.process.placed import Placed
+from diagrams.questions.melter import PrintedState
+from service.process.placed import Placed, tabulated
 from service.safety import safety_for
 from service.schemas.equilibrium import (
     EquilibriaAnswer,
@@ -20,7 +21,11 @@ from service.schemas.source import polygon_source
 
 def equilibrium_of(subject: Placed, temperature_c: float) -> EquilibriumAnswer:
     """Phases, amounts and compositions; OutsideData names `temperature_c`."""
-    found = equilibrium(subject.place.diagram, subject.place.second_wt, temperature_c)
+    try:
+        found = subject.melter.equilibrium(temperature_c)
+    except OutsideData as error:
+        error.field = "temperature_c" if error.field == "temperatures_c" else error.field
+        raise
     return EquilibriumAnswer(
         alloy=subject.shown,
         temperature_c=temperature_c,
@@ -28,7 +33,8 @@ def equilibrium_of(subject: Placed, temperature_c: float) -> EquilibriumAnswer:
         phases=[_phase(amount) for amount in found.phases],
         liquid_mass_fraction=found.liquid_mass_fraction,
         on_boundary=found.on_boundary,
-        just_below=_state(found.below) if found.below is not None else None,
+        just_below=state_shown(found.below) if found.below is not None else None,
+        note=_note(subject),
         source=subject.source,
         safety=safety_for(subject.elements, subject.process, temperature_c),
     )
@@ -66,9 +72,17 @@ def _phase(amount: PhaseAmount) -> Phase:
     )
 
 
-def _state(found: Equilibrium) -> State:
+def state_shown(found: Equilibrium | PrintedState) -> State:
+    """Phases and amounts as answered."""
     return State(
         field=found.field,
         phases=[_phase(amount) for amount in found.phases],
         liquid_mass_fraction=found.liquid_mass_fraction,
     )
+
+
+def _note(subject: Placed) -> str | None:
+    filler = subject.alloy.filler
+    if subject.melter.method != "standard table" or filler is None:
+        return None
+    return f"{tabulated(filler)} Which solids there are, and how much is liquid in between, is not known."

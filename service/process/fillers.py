@@ -4,7 +4,7 @@ from collections.abc import Mapping
 from functools import cache
 
 from diagrams.elements import symbol
-from diagrams.errors import DiagramsError, InvalidInput
+from diagrams.errors import InvalidInput
 from diagrams.fillers import Filler, designation_key, fillers
 from service.process.placed import placed
 from service.schemas.alloy import AlloyAsked
@@ -13,14 +13,9 @@ from service.schemas.fillers import FillersWanted
 
 @cache
 def covered() -> Mapping[str, str]:
-    """Id of the stored diagram by name of the filler, for all fillers that have one."""
-    found = {}
-    for filler in fillers():
-        try:
-            found[filler.name] = placed(AlloyAsked(designation=filler.name)).place.diagram.id
-        except DiagramsError:
-            continue
-    return found
+    """Id of the data by name of the filler, for all fillers whose melting is computed."""
+    sources = {f.name: placed(AlloyAsked(designation=f.name)).source for f in fillers()}
+    return {name: source.diagram for name, source in sources.items() if source.method != "standard table"}
 
 
 def choose(wanted: FillersWanted) -> list[Filler]:

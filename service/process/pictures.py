@@ -3,12 +3,11 @@
 from functools import lru_cache
 
 from diagrams.diagram import Diagram
-from diagrams.errors import InvalidInput, OutsideData
+from diagrams.errors import InvalidInput, NotCovered, OutsideData
 from diagrams.figure import draw_diagram
 from diagrams.figure_style import PictureFormat
 from diagrams.melting_figure import Melting, draw_melting
 from service.process.caution import caution_lines
-from service.process.curves import curve_of, kept_over, needed_over
 from service.process.placed import Placed, about
 
 KEPT = 64  # pictures of about 150 kB each
@@ -47,14 +46,21 @@ def _diagram_picture(diagram: Diagram, point: tuple[float, float] | None, form: 
 @lru_cache(maxsize=KEPT)
 def melting_picture(subject: Placed, target: float | None, form: PictureFormat) -> bytes:
     """The picture of an alloy's melting; OutsideData where its melting range lies beyond the data."""
+    melter = subject.melter
     with about(subject):
+        if melter.curve is None:
+            raise NotCovered(
+                f"No data cover {', '.join(subject.alloy.composition_wt)}: there is no curve to draw.",
+                field="alloy",
+                remedy="GET /v1/melting gives the temperatures its standard prints.",
+            )
         melting = Melting(
             _name(subject),
-            subject.place.diagram,
-            curve_of(subject.place),
-            kept_over(subject.place, 0.0),
-            needed_over(subject.place, 1.0),
-            None if target is None else (target, needed_over(subject.place, target)),
+            melter,
+            melter.curve,
+            melter.kept(0.0),
+            melter.needed(1.0),
+            None if target is None else (target, melter.needed(target)),
         )
     return draw_melting(melting, caution_lines(subject.elements, subject.process), form)
 

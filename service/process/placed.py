@@ -1,47 +1,39 @@
-"""An alloy made ready for questions: found, placed on its diagram, and kept, since most are asked again."""
+"""An alloy made ready for questions: with the data that tell of it, and kept, since most are asked again."""
 
 from collections.abc import Iterator
 from contextlib import contextmanager
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from functools import lru_cache
+from types import MappingProxyType
 
 from diagrams.alloys import Alloy, parse_alloy
 from diagrams.errors import DiagramsError
 from diagrams.files.catalog import catalog
 from diagrams.fillers import Filler
-from diagrams.questions.locate import check_composition, locate
-from diagrams.questions.place import Place, place
+from diagrams.questions.melt import melter_for
+from diagrams.questions.melter import Melter
 from service.safety import Process
 from service.schemas.alloy import AlloyAsked, AlloyUsed, Amounts, Form, alloy_of, alloy_shown
 from service.schemas.base import within
-from service.schemas.source import SourceUsed, polygon_source
+from service.schemas.source import SourceUsed, source_of
 
 BRAZING_FROM_C = 450.0  # liquidus from which joining is called brazing (AWS A3.0, ISO 857-2), from memory
 _ABOUT_THE_ALLOY = frozenset({"", "alloy", "composition_wt", "tolerance_wt"})
+_NO_LIMITS = MappingProxyType[str, tuple[float, float]]({})
 
 
 @dataclass(frozen=True, eq=False, slots=True)
 class Placed:
-    """An alloy on its diagram; `field` and `tolerance_field` are what an error about it has to name."""
+    """An alloy with its data; `field` and `tolerance_field` are what an error about it has to name."""
 
     alloy: Alloy
-    place: Place
+    melter: Melter
     process: Process | None
     elements: frozenset[str]
     shown: AlloyUsed
     source: SourceUsed
     field: str
     tolerance_field: str
-
-    @property
-    def second(self) -> str:
-        """Symbol of the element whose mass percent is the diagram's axis."""
-        return self.place.diagram.elements[1]
-
-    @property
-    def has_tolerance(self) -> bool:
-        """Whether the alloy may lie beside its nominal composition."""
-        return self.place.low_wt < self.place.high_wt
 
 
 def placed(asked: AlloyAsked, where: str = "alloy") -> Placed:
@@ -53,9 +45,14 @@ def placed(asked: AlloyAsked, where: str = "alloy") -> Placed:
         return _placed(*asked.key)
 
 
-def placed_text(text: str) -> Placed:
+def placed_text(text: str, leave_out_below_wt: float | None = None) -> Placed:
     """The alloy of an address line; raises as `placed` does, and names the field `alloy`."""
-    return _placed_text(text)
+    return _placed_text(text, leave_out_below_wt)
+
+
+def placed_alloy(alloy: Alloy, field: str) -> Placed:
+    """An alloy that comes of a computation, without tolerance; errors about it name `field`."""
+    return _place(alloy, field, field)
 
 
 @contextmanager
@@ -74,31 +71,35 @@ def about(subject: Placed, where: str = "") -> Iterator[None]:
 
 
 @lru_cache(maxsize=4096)
-def _placed(form: Form, value: str | Amounts, tolerance: Amounts | None) -> Placed:
-    return _place(alloy_of(form, value, tolerance), form, form if tolerance is None else "tolerance_wt")
+def _placed(
+    form: Form, value: str | Amounts, tolerance: Amounts | None, leave_out_below_wt: float | None
+) -> Placed:
+    tolerance_field = form if tolerance is None else "tolerance_wt"
+    return _place(alloy_of(form, value, tolerance), form, tolerance_field, leave_out_below_wt)
 
 
 @lru_cache(maxsize=4096)
-def _placed_text(text: str) -> Placed:
-    return _place(parse_alloy(text), "alloy", "alloy")
+def _placed_text(text: str, leave_out_below_wt: float | None) -> Placed:
+    return _place(parse_alloy(text), "alloy", "alloy", leave_out_below_wt)
 
 
-def _place(alloy: Alloy, field: str, tolerance_field: str) -> Placed:
+def _place(alloy: Alloy, field: str, tolerance_field: str, leave_out_below_wt: float | None = None) -> Placed:
     try:
-        found = place(catalog(), alloy)
-        check_composition(found.diagram, found.second_wt)
+        found = melter_for(catalog(), alloy, leave_out_below_wt)
     except DiagramsError as error:
         error.field = tolerance_field if error.field == "tolerance_wt" else field
         if alloy.filler is not None:
             error.remedy = f"{tabulated(alloy.filler)} {error.remedy}".strip()
         raise
+    melter = found.melter
+    used = melter.alloy if melter.limits_wt else replace(melter.alloy, limits_wt=_NO_LIMITS)
     return Placed(
-        alloy,
-        found,
-        _process(alloy, found),
+        melter.alloy,
+        melter,
+        _process(melter),
         frozenset(alloy.composition_wt),
-        alloy_shown(alloy),
-        polygon_source(found.diagram),
+        alloy_shown(used, found.left_out_wt),
+        source_of(melter),
         field,
         tolerance_field,
     )
@@ -112,16 +113,10 @@ def tabulated(filler: Filler) -> str:
     )
 
 
-def _process(alloy: Alloy, found: Place) -> Process | None:
-    """Solder or braze: as the table says, else by the liquidus; None if that lies beyond the data.
-
-    One look at the border temperature tells as much as the liquidus itself, and costs far less.
-    """
-    if alloy.filler is not None:
-        return "braze" if alloy.filler.class_ == "braze" else "solder"
-    lowest_c, highest_c = found.diagram.temperature_range_c
-    looked_c = min(max(BRAZING_FROM_C, lowest_c), highest_c)
-    molten = locate(found.diagram, found.second_wt, looked_c).liquid_mass_fraction >= 1.0
-    if molten:
-        return "solder" if looked_c <= BRAZING_FROM_C else None
-    return "braze" if looked_c >= BRAZING_FROM_C else None
+def _process(melter: Melter) -> Process | None:
+    """Solder or braze: as the table says, else by the liquidus; None if that lies beyond the data."""
+    filler = melter.alloy.filler
+    if filler is not None:
+        return "braze" if filler.class_ == "braze" else "solder"
+    molten = melter.molten_at(BRAZING_FROM_C)
+    return None if molten is None else "solder" if molten else "braze"

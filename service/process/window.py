@@ -9,8 +9,7 @@ from collections.abc import Sequence
 from dataclasses import dataclass
 
 from diagrams.errors import InvalidInput
-from diagrams.questions.melting_range import Extremes
-from service.process.curves import curve_of, kept_over, liquid_up_to, most_liquid_up_to
+from diagrams.questions.melter import Span
 from service.process.placed import Placed, about
 from service.process.window_terms import (
     BRAZING_MAXIMUM,
@@ -54,12 +53,12 @@ class JointSeen:
     """What an earlier joint goes through if the hottest joint reads the maximum.
 
     `nominal` counts the reading as true and the composition as nominal; `worst` takes the sensor to read low
-    by its tolerance and the least favourable composition. Both None where there is no maximum, or where it
-    lies beyond the data.
+    by its tolerance and the least favourable composition. Both None where there is no maximum, where it
+    lies beyond the data, or where these tell bounds only.
     """
 
     joint: EarlierJoint
-    starts_to_melt: Extremes
+    starts_to_melt: Span
     nominal: float | None
     worst: float | None
 
@@ -93,7 +92,7 @@ def find_window(filler: Placed, demands: Demands, where: str = "alloy") -> Windo
     _check_names(demands)
     tolerance_c = demands.sensor_tolerance_c
     with about(filler, where):
-        solidus_c = kept_over(filler.place, 0.0).nominal
+        solidus_c = filler.melter.kept(0.0).nominal
         lower = [target_term(filler, demands.target_liquid_fraction, demands.superheat_c, tolerance_c)]
     practice_lower, practice_upper = practice_terms(filler, tolerance_c)
     lower += practice_lower
@@ -101,7 +100,7 @@ def find_window(filler: Placed, demands: Demands, where: str = "alloy") -> Windo
     starts = []
     for k, joint in enumerate(demands.earlier_joints):
         with about(joint.subject, f"earlier_joints.{k}.alloy"):
-            starts.append(kept_over(joint.subject.place, 0.0))
+            starts.append(joint.subject.melter.kept(0.0))
             upper += remelting_term(joint, tolerance_c)
     highest = max(lower, key=lambda term: term.value_c)
     lowest = min(upper, key=lambda term: term.value_c, default=None)
@@ -155,12 +154,12 @@ def _check_names(demands: Demands) -> None:
             taken.add(key)
 
 
-def _seen(joint: EarlierJoint, starts: Extremes, maximum_c: float | None, tolerance_c: float) -> JointSeen:
+def _seen(joint: EarlierJoint, starts: Span, maximum_c: float | None, tolerance_c: float) -> JointSeen:
     if maximum_c is None:
         return JointSeen(joint, starts, None, None)
-    found = joint.subject.place
-    nominal = liquid_up_to(curve_of(found), maximum_c)
-    return JointSeen(joint, starts, nominal, most_liquid_up_to(found, maximum_c + tolerance_c))
+    melter = joint.subject.melter
+    worst = melter.most_liquid_up_to(maximum_c + tolerance_c)
+    return JointSeen(joint, starts, melter.liquid_up_to(maximum_c), worst)
 
 
 def _collision(lower: Term, upper: Term, spread_c: float) -> Collision:

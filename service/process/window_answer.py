@@ -43,7 +43,7 @@ def window_of(question: WindowQuestion) -> WindowAnswer:
 
 def window_at(address: WindowAddress) -> WindowAnswer:
     """The window asked for in an address line."""
-    filler = placed_text(address.alloy)
+    filler = placed_text(address.alloy, address.leave_out_traces_below_wt)
     limits = () if address.limit_c is None else (UpperLimit(THE_LIMIT, address.limit_c),)
     demands = Demands(
         target_liquid_fraction=address.target_liquid_fraction,

@@ -1,8 +1,8 @@
 """The single terms of a window: a temperature each, and the reason for it in full."""
 
+from collections.abc import Mapping
 from dataclasses import dataclass
 
-from service.process.curves import kept_over, needed_over
 from service.process.placed import Placed
 
 TARGET = "target liquid fraction"
@@ -39,11 +39,11 @@ class EarlierJoint:
 
 def target_term(filler: Placed, fraction: float, superheat_c: float, tolerance_c: float) -> Term:
     """Hot enough for the liquid fraction even at the least favourable composition in tolerance."""
-    found = needed_over(filler.place, fraction)
-    value_c = found.highest + superheat_c + tolerance_c
+    found = filler.melter.needed(fraction)
+    value_c = found.safe_high + superheat_c + tolerance_c
     reason = (
-        f"{label(filler)} is {_reached(fraction)} liquid from {found.nominal:.2f} °C on; "
-        f"{_at_worst(filler, 'from', found.highest, found.highest_at_wt)} ({_data(filler)}). "
+        f"{label(filler)} is {_reached(fraction)} liquid from {found.nominal:.2f} °C on{_bound(filler)}; "
+        f"{_at_worst(filler, 'from', found.highest, found.highest_at)} ({_data(filler)}). "
         f"Plus superheat {superheat_c:g} °C and sensor tolerance {tolerance_c:g} °C: {value_c:.2f} °C."
     )
     return Term(TARGET, value_c, reason)
@@ -95,11 +95,12 @@ def remelting_term(joint: EarlierJoint, tolerance_c: float) -> list[Term]:
     """The highest temperature an earlier joint stands; none if it may melt altogether."""
     if joint.max_liquid_fraction >= 1.0:
         return []
-    found = kept_over(joint.subject.place, joint.max_liquid_fraction)
-    value_c = found.lowest - joint.margin_c - tolerance_c
+    found = joint.subject.melter.kept(joint.max_liquid_fraction)
+    value_c = found.safe_low - joint.margin_c - tolerance_c
     reason = (
         f"{joint.name} ({label(joint.subject)}) stays {_kept(joint.max_liquid_fraction)} up to "
-        f"{found.nominal:.2f} °C; {_at_worst(joint.subject, 'up to', found.lowest, found.lowest_at_wt)} "
+        f"{found.nominal:.2f} °C{_bound(joint.subject)}; "
+        f"{_at_worst(joint.subject, 'up to', found.lowest, found.lowest_at)} "
         f"({_data(joint.subject)}). Minus margin {joint.margin_c:g} °C and sensor tolerance {tolerance_c:g} "
         f"°C: {value_c:.2f} °C."
     )
@@ -120,17 +121,33 @@ def _kept(fraction: float) -> str:
     return "wholly solid" if fraction == 0.0 else f"at most {100 * fraction:.4g} % liquid"
 
 
-def _at_worst(subject: Placed, preposition: str, temperature_c: float, at_wt: float) -> str:
-    found = subject.place
-    if not subject.has_tolerance:
-        return f"no tolerance is known, {found.second_wt:.4g} wt% {subject.second} is taken as it is"
+def _bound(subject: Placed) -> str:
+    """Said where a temperature is a bound only."""
+    return " for certain, which is all its standard tells" if subject.melter.curve is None else ""
+
+
+def _at_worst(
+    subject: Placed, preposition: str, temperature_c: float | None, at: Mapping[str, float] | None
+) -> str:
+    limits = subject.melter.limits_wt
+    if temperature_c is None or at is None:
+        return "what its tolerance may change is not known"
+    if not limits:
+        return f"no tolerance is known, {_amounts(subject.alloy.composition_wt)} is taken as it is"
     after = " on" if preposition == "from" else ""
-    return (
-        f"at worst within {found.low_wt:.4g} to {found.high_wt:.4g} wt% {subject.second}, at {at_wt:.4g} "
-        f"wt%, {preposition} {temperature_c:.2f} °C{after}"
-    )
+    within = ", ".join(f"{low:.4g} to {high:.4g} wt% {el}" for el, (low, high) in limits.items())
+    where = _amounts({el: at.get(el, 0.0) for el in limits})
+    return f"at worst within {within}, at {where}, {preposition} {temperature_c:.2f} °C{after}"
+
+
+def _amounts(composition_wt: Mapping[str, float]) -> str:
+    return ", ".join(f"{wt:.4g} wt% {el}" for el, wt in composition_wt.items())
 
 
 def _data(subject: Placed) -> str:
-    diagram = subject.place.diagram
-    return f"diagram {diagram.id}, edition {diagram.edition}"
+    melter = subject.melter
+    if melter.method == "standard table":
+        return f"printed values, {melter.edition}"
+    return (
+        f"{'diagram' if melter.method == 'polygon' else 'system'} {melter.data_id}, edition {melter.edition}"
+    )

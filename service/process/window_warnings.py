@@ -3,8 +3,6 @@
 from collections.abc import Iterable, Sequence
 from dataclasses import dataclass
 
-from diagrams.questions.melting import melting_curve
-from service.process.curves import kept_over, liquid_up_to
 from service.process.placed import Placed
 from service.process.window_terms import EarlierJoint, Term, label
 
@@ -46,6 +44,7 @@ def warnings_of(
             found.append(Warned("limit-below-solidus", text))
     for joint in joints:
         found += _melting_at_once(joint, sensor_tolerance_c)
+    found += [Warned("printed-values", text) for text in _printed([filler, *(j.subject for j in joints)])]
     found += [Warned("from-memory", text) for text in _remembered([filler, *(j.subject for j in joints)])]
     return tuple(found)
 
@@ -54,28 +53,40 @@ def _melting_at_once(joint: EarlierJoint, tolerance_c: float) -> Iterable[Warned
     """An earlier joint whose bound stands on a temperature where much of it melts at once."""
     if joint.max_liquid_fraction >= 1.0 or joint.margin_c + tolerance_c > 0.0:
         return
-    place = joint.subject.place
-    limit = kept_over(place, joint.max_liquid_fraction)
-    curve = melting_curve(place.diagram, limit.lowest_at_wt)
-    below, above = liquid_up_to(curve, limit.lowest), curve.liquid_fraction(limit.lowest)
-    if below is not None and above - below > _JUMP:
+    melter = joint.subject.melter
+    limit = melter.kept(joint.max_liquid_fraction)
+    jump = melter.jump(limit.safe_low, limit.lowest_at or melter.alloy.composition_wt)
+    if jump > _JUMP:
         yield Warned(
             "melts-at-once",
-            f"At {limit.lowest:.2f} °C {joint.name} goes from {100 * below:.3g} % to {100 * above:.3g} % "
-            f"liquid at once, and neither margin_c nor sensor_tolerance_c keeps a distance from it.",
+            f"At {limit.safe_low:.2f} °C {100 * jump:.3g} % of {joint.name} melts at once, and neither "
+            f"margin_c nor sensor_tolerance_c keeps a distance from it.",
         )
+
+
+def _printed(subjects: Iterable[Placed]) -> list[str]:
+    """What rests on printed temperatures alone, each once."""
+    texts: dict[str, None] = {}
+    for subject in subjects:
+        if subject.melter.method == "standard table":
+            texts[
+                f"No data cover {label(subject)}: its printed solidus and liquidus stand in, for guidance. "
+                f"How much is liquid between them, and what its tolerance changes, is not known."
+            ] = None
+    return list(texts)
 
 
 def _remembered(subjects: Iterable[Placed]) -> list[str]:
     """What rests on values written down from memory, each once."""
     texts: dict[str, None] = {}
     for subject in subjects:
-        diagram, row = subject.place.diagram, subject.alloy.filler
-        if any(source.how == "from memory" for source in diagram.sources):
-            texts[f"The diagram {diagram.id} rests on values from memory: guidance, no claim."] = None
+        melter, row = subject.melter, subject.alloy.filler
+        if any(source.how == "from memory" for source in melter.sources):
+            told = f"{label(subject)} in the filler table" if melter.curve is None else melter.data_id
+            texts[f"The data for {told} rest on values from memory: guidance, no claim."] = None
         if row is None:
             continue
-        limits = subject.has_tolerance and subject.tolerance_field != "tolerance_wt"
+        limits = subject.melter.limits_wt and subject.tolerance_field != "tolerance_wt"
         if limits and "from memory" in row.limits_source:
             texts[f"The tolerance of {label(subject)} stands in the table from memory."] = None
         if row.brazing_range_c is not None and "from memory" in f"{row.how} {row.notes}":

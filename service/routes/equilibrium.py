@@ -6,7 +6,7 @@ from fastapi import Body
 
 from service.process.equilibrium import equilibria_of, equilibrium_of
 from service.process.placed import placed, placed_text
-from service.routes.parameters import AlloyText, TemperatureQuery
+from service.routes.parameters import AlloyText, TemperatureQuery, TracesQuery
 from service.routes.strict import new_router
 from service.schemas.equilibrium import (
     EquilibriaAnswer,
@@ -56,9 +56,11 @@ async def ask_equilibrium(
 
 
 @router.get("/equilibrium", summary="Phases at a temperature, by address line")
-async def get_equilibrium(alloy: AlloyText, temperature_c: TemperatureQuery) -> EquilibriumAnswer:
+async def get_equilibrium(
+    alloy: AlloyText, temperature_c: TemperatureQuery, traces_below_wt: TracesQuery = None
+) -> EquilibriumAnswer:
     """Give the same answer as `POST /v1/equilibrium`, for an alloy in one string."""
-    return equilibrium_of(placed_text(alloy), temperature_c)
+    return equilibrium_of(placed_text(alloy, traces_below_wt), temperature_c)
 
 
 @router.post("/equilibria", summary="Phases at many points")

@@ -6,7 +6,7 @@ from fastapi import Body
 
 from service.process.melting import melting_of
 from service.process.placed import placed, placed_text
-from service.routes.parameters import AlloyText
+from service.routes.parameters import AlloyText, TracesQuery
 from service.routes.strict import new_router
 from service.schemas.melting import MeltingAnswer, MeltingQuestion
 
@@ -22,6 +22,19 @@ EXAMPLES = {
         "value": {"alloy": {"composition_wt": {"Ag": 60, "Cu": 40}, "tolerance_wt": {"Ag": 1}}},
     },
     "phosphorus": {"summary": "A copper–phosphorus braze", "value": {"alloy": {"designation": "CuP 182"}}},
+    "printed values": {
+        "summary": "A braze that no data cover: what its standard prints, as bounds",
+        "value": {"alloy": {"designation": "BNi-2"}, "temperatures_c": [950, 985, 1010]},
+    },
+    "trace": {
+        "summary": "A tin–copper solder with a trace of nickel, which may be left out",
+        "value": {
+            "alloy": {
+                "composition_wt": {"Sn": 99.25, "Cu": 0.7, "Ni": 0.05},
+                "leave_out_traces_below_wt": 0.1,
+            }
+        },
+    },
 }
 
 
@@ -36,6 +49,6 @@ def ask_melting(question: Annotated[MeltingQuestion, Body(openapi_examples=EXAMP
 
 
 @router.get("/melting", summary="Melting range and curve, by address line")
-def get_melting(alloy: AlloyText) -> MeltingAnswer:
+def get_melting(alloy: AlloyText, traces_below_wt: TracesQuery = None) -> MeltingAnswer:
     """Give the same answer as `POST /v1/melting`, for an alloy in one string."""
-    return melting_of(placed_text(alloy), where="")
+    return melting_of(placed_text(alloy, traces_below_wt), where="")

@@ -4,6 +4,8 @@ from typing import Annotated
 
 from fastapi import Query
 
+from diagrams.questions.traces import MOST_TRACE_WT
+from service.schemas.alloy import TRACES
 from service.schemas.base import Finite
 
 AlloyText = Annotated[
@@ -15,5 +17,8 @@ AlloyText = Annotated[
         "element may be left open and takes the balance (`Sn60Pb`).",
         examples=["Sn63Pb37"],
     ),
+]
+TracesQuery = Annotated[
+    Finite | None, Query(gt=0, le=MOST_TRACE_WT, alias="leave_out_traces_below_wt", description=TRACES)
 ]
 TemperatureQuery = Annotated[Finite, Query(description="Temperature, °C.", examples=[190])]

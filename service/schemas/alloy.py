@@ -1,19 +1,23 @@
 """An alloy on the wire: how it is named in a question, and how an answer says which one it used."""
 
 from collections.abc import Mapping
-from functools import lru_cache
 from typing import Annotated, Literal
 
 from pydantic import Field
 
 from diagrams.alloys import Alloy, alloy_from_at, alloy_from_designation, alloy_from_wt
 from diagrams.errors import InvalidInput
+from diagrams.questions.traces import MOST_TRACE_WT
 from service.schemas.base import AnswerModel, StrictModel
 
 Form = Literal["designation", "composition_wt", "composition_at"]
 Amounts = tuple[tuple[str, float], ...]
 FORMS: tuple[Form, ...] = ("designation", "composition_wt", "composition_at")
 MOST_ELEMENTS = 30
+TRACES = (
+    "Elements of which the alloy holds less than this, mass percent, may be left out if no data cover them; "
+    "the answer repeats which. Left out itself, every element counts."
+)
 
 Percents = Annotated[dict[str, float], Field(max_length=MOST_ELEMENTS)]
 
@@ -43,6 +47,13 @@ class AlloyAsked(StrictModel):
         "designation brings its standard's own limits, if the table holds them, and a composition none.",
         examples=[{"Sn": 0.5}],
     )
+    leave_out_traces_below_wt: float | None = Field(
+        default=None,
+        gt=0,
+        le=MOST_TRACE_WT,
+        description=TRACES,
+        examples=[0.1],
+    )
 
     @property
     def form(self) -> Form:
@@ -57,7 +68,7 @@ class AlloyAsked(StrictModel):
         )
 
     @property
-    def key(self) -> tuple[Form, str | Amounts, Amounts | None]:
+    def key(self) -> tuple[Form, str | Amounts, Amounts | None, float | None]:
         """The same as plain values that can be kept by; raises InvalidInput as `form` does."""
         form = self.form
         value = getattr(self, form)
@@ -66,6 +77,7 @@ class AlloyAsked(StrictModel):
             form,
             value if isinstance(value, str) else tuple(value.items()),
             None if tolerance is None else tuple(tolerance.items()),
+            self.leave_out_traces_below_wt,
         )
 
 
@@ -95,6 +107,10 @@ class AlloyUsed(AnswerModel):
     limits_wt: dict[str, Limits] = Field(
         description="Lowest and highest mass percent the answer reckons with, by element; empty if none."
     )
+    left_out_wt: dict[str, float] = Field(
+        description="Trace elements that the question allowed to leave out and no data cover, mass percent; "
+        "`composition_wt` is the rest, taken as 100. Empty if none."
+    )
 
 
 def limits_shown(limits_wt: Mapping[str, tuple[float, float]]) -> dict[str, Limits]:
@@ -102,12 +118,12 @@ def limits_shown(limits_wt: Mapping[str, tuple[float, float]]) -> dict[str, Limi
     return {el: Limits(lowest=low, highest=high) for el, (low, high) in limits_wt.items()}
 
 
-@lru_cache(maxsize=2048)
-def alloy_shown(alloy: Alloy) -> AlloyUsed:
+def alloy_shown(alloy: Alloy, left_out_wt: Mapping[str, float] | None = None) -> AlloyUsed:
     """The alloy as an answer repeats it."""
     return AlloyUsed(
         composition_wt=dict(alloy.composition_wt),
         designation=alloy.designation,
         given_total_wt=alloy.given_total_wt,
         limits_wt=limits_shown(alloy.limits_wt),
+        left_out_wt=dict(left_out_wt or {}),
     )

@@ -18,7 +18,7 @@ class EquilibriumQuestion(StrictModel):
 
     alloy: AlloyAsked
     temperature_c: float = Field(
-        description="Temperature, °C. It must lie in the diagram's `temperature_range_c`."
+        description="Temperature, °C. It must lie in the `temperature_range_c` of the data."
     )
 
 
@@ -36,9 +36,14 @@ class Phase(AnswerModel):
 class State(AnswerModel):
     """Phases and amounts."""
 
-    field: str = Field(description="Name of the field of the diagram, liquid first.", examples=["L + (Pb)"])
+    field: str = Field(
+        description="Names of the phases, liquid first; `solid` where the data do not tell which.",
+        examples=["L + (Pb)"],
+    )
     phases: list[Phase] = Field(description="The phases present; their mass fractions sum to 1.")
-    liquid_mass_fraction: float = Field(description="Share of the mass that is liquid, 0 to 1.")
+    liquid_mass_fraction: float | None = Field(
+        description="Share of the mass that is liquid, 0 to 1; null where unknown."
+    )
 
 
 class EquilibriumAnswer(Answer):
@@ -46,11 +51,18 @@ class EquilibriumAnswer(Answer):
 
     alloy: AlloyUsed
     temperature_c: float
-    field: str = Field(description="Name of the field of the diagram, liquid first.", examples=["L + (Pb)"])
-    phases: list[Phase] = Field(
-        description="The phases present. Mass fractions sum to 1; amounts times compositions give the alloy."
+    field: str = Field(
+        description="Names of the phases, liquid first; `solid` where the data do not tell which.",
+        examples=["L + (Pb)"],
     )
-    liquid_mass_fraction: float = Field(description="Share of the mass that is liquid, 0 to 1.")
+    phases: list[Phase] = Field(
+        description="The phases present. Mass fractions sum to 1; amounts times compositions give the alloy. "
+        "By `standard table` only the liquid above the liquidus is known; otherwise the list is empty."
+    )
+    liquid_mass_fraction: float | None = Field(
+        description="Share of the mass that is liquid, 0 to 1; null by `standard table` between the printed "
+        "solidus and liquidus, where it is unknown."
+    )
     on_boundary: bool = Field(
         description="Whether the point counts as lying on a border of the field: within 0.0001 mass percent "
         "of one, or within 0.005 °C of a horizontal one. On a border the single phase beside it is answered; "
@@ -60,6 +72,7 @@ class EquilibriumAnswer(Answer):
         description="At an invariant temperature (a eutectic, a melting point), where the phases change all "
         "at once: the state just below; what is answered above is the state just above. Otherwise null."
     )
+    note: str | None = Field(description="What to mind where only printed temperatures are known.")
     source: SourceUsed
 
 

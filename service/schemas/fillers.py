@@ -48,7 +48,8 @@ class FillersWanted(BaseModel):
     )
     covered: bool | None = Field(
         default=None,
-        description="`true`: a stored diagram covers it, so that its melting can be asked; `false`: none.",
+        description="`true`: its melting is computed from stored data; `false`: the temperatures that its "
+        "standard prints are all there is.",
     )
     search: str | None = Field(
         default=None,
@@ -90,8 +91,8 @@ class FillerShown(AnswerModel):
     lead_bearing: bool
     cadmium_bearing: bool
     diagram: str | None = Field(
-        description="Id of the stored diagram that covers it; null: melting, equilibrium and window cannot "
-        "be asked for it in this edition."
+        description="Id of the diagram or system its melting is computed from; null: its printed solidus and "
+        "liquidus are all there is, and answers give bounds."
     )
     reference: Reference
     notes: str

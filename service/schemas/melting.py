@@ -18,7 +18,7 @@ class MeltingQuestion(StrictModel):
     temperatures_c: Annotated[list[float], Field(max_length=MOST_TEMPERATURES)] = Field(
         default=[],
         description="Temperatures, °C, at which the liquid fraction is wanted; each must lie in the "
-        "diagram's `temperature_range_c`.",
+        "`temperature_range_c` of the data.",
         examples=[[185, 200, 220]],
     )
 
@@ -27,15 +27,22 @@ class TemperatureSpan(AnswerModel):
     """A temperature at the nominal composition, and its extremes over all compositions in tolerance."""
 
     nominal: float = Field(description="At the nominal composition, °C.")
-    lowest: float = Field(description="Lowest over the tolerance, °C; without one as the nominal.")
-    highest: float = Field(description="Highest over the tolerance, °C.")
+    lowest: float | None = Field(
+        description="Lowest over the tolerance, °C; without one as the nominal; null by `standard table`, "
+        "which knows the nominal only."
+    )
+    highest: float | None = Field(description="Highest over the tolerance, °C; null likewise.")
+    lowest_at_wt: dict[str, float] | None = Field(description="Composition of the lowest, mass percent.")
+    highest_at_wt: dict[str, float] | None = Field(description="Composition of the highest, mass percent.")
 
 
 class CurvePoint(AnswerModel):
     """A point of the melting curve at the nominal composition."""
 
     temperature_c: float
-    liquid_mass_fraction: float = Field(description="Share of the mass that is liquid, 0 to 1.")
+    liquid_mass_fraction: float | None = Field(
+        description="Share of the mass that is liquid, 0 to 1; null where it is unknown."
+    )
 
 
 class Tabulated(AnswerModel):
@@ -45,8 +52,12 @@ class Tabulated(AnswerModel):
     designations: dict[str, str] = Field(description="The designation in each standard.")
     solidus_c: float = Field(description="Printed solidus, °C.")
     liquidus_c: float = Field(description="Printed liquidus, °C.")
-    solidus_difference_c: float = Field(description="Solidus of the diagram minus the printed one, °C.")
-    liquidus_difference_c: float = Field(description="Liquidus of the diagram minus the printed one, °C.")
+    solidus_difference_c: float | None = Field(
+        description="Computed solidus minus the printed one, °C; null if the printed one is the answer."
+    )
+    liquidus_difference_c: float | None = Field(
+        description="Computed liquidus minus the printed one, °C; null if the printed one is the answer."
+    )
     single_melting_value: bool = Field(description="Whether the standard prints one temperature only.")
     note: str = Field(description="What to mind when comparing.")
     reference: Reference
@@ -59,10 +70,14 @@ class MeltingAnswer(Answer):
     alloy: AlloyUsed
     solidus_c: TemperatureSpan = Field(description="The first liquid forms here on heating, °C.")
     liquidus_c: TemperatureSpan = Field(description="From here on all is liquid, °C.")
+    tolerance: str | None = Field(
+        description="How lowest and highest were found; null where the composition has no tolerance."
+    )
     curve: list[CurvePoint] = Field(
         description="The melting curve at the nominal composition, from the lowest to the highest "
         "temperature of the data: every kink of it and every temperature asked for. Where much melts at one "
-        "temperature, two points share it: before and after."
+        "temperature, two points share it: before and after. By `standard table` there is no curve: 0 at "
+        "the printed solidus, null from there to the printed liquidus, 1 from there on."
     )
     at_temperatures: list[CurvePoint] = Field(
         description="Liquid fraction at the temperatures asked for, in the order asked; at a temperature "

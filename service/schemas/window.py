@@ -4,7 +4,8 @@ from typing import Annotated
 
 from pydantic import BaseModel, ConfigDict, Field
 
-from service.schemas.alloy import AlloyAsked, AlloyUsed
+from diagrams.questions.traces import MOST_TRACE_WT
+from service.schemas.alloy import TRACES, AlloyAsked, AlloyUsed
 from service.schemas.base import Answer, AnswerModel, StrictModel
 from service.schemas.melting import TemperatureSpan
 from service.schemas.source import SourceUsed
@@ -84,6 +85,9 @@ class WindowAddress(BaseModel):
     superheat_c: Difference = Field(default=0.0, description=_SUPERHEAT)
     sensor_tolerance_c: Difference = Field(default=0.0, description=_SENSOR)
     spread_c: Difference = Field(default=0.0, description=_SPREAD)
+    leave_out_traces_below_wt: Annotated[float, Field(gt=0, le=MOST_TRACE_WT)] | None = Field(
+        default=None, description=TRACES
+    )
     limit_c: Temperature | None = Field(
         default=None,
         description="One upper limit, °C, which the answer names `limit`. For more, and for earlier joints, "
@@ -114,11 +118,11 @@ class LiquidReached(AnswerModel):
     """Share of an earlier joint's mass that is liquid, 0 to 1."""
 
     nominal: float | None = Field(
-        description="At its nominal composition, the reading taken as true; null where no data reach."
+        description="At its nominal composition, the reading taken as true; null where no data tell."
     )
     worst: float | None = Field(
         description="At the least favourable composition in tolerance, the sensor reading low by its "
-        "tolerance."
+        "tolerance; null where no data tell."
     )
 
 
@@ -141,8 +145,8 @@ class WarningShown(AnswerModel):
     """One thing to mind."""
 
     code: str = Field(
-        description="`partly-liquid`, `no-upper-limit`, `limit-below-solidus`, `melts-at-once` or "
-        "`from-memory`."
+        description="`partly-liquid`, `no-upper-limit`, `limit-below-solidus`, `melts-at-once`, "
+        "`printed-values` or `from-memory`."
     )
     text: str
 

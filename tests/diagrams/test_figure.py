@@ -198,7 +198,7 @@ def test_melting_picture_gives_range_target_and_jump() -> None:
     drawn = melting(60.0, 0.97)
     (width, height), texts = read_svg(draw_melting(drawn, CAUTION, "svg"))
     words = " ".join(text.words for text in texts)
-    diagram = drawn.diagram
+    diagram = drawn.origin
     eutectic = next(i for i in diagram.invariants if i.kind == "eutectic")
     left, right = eutectic.compositions_wt["(Pb)"], eutectic.compositions_wt["L"]
     jump = (60.0 - left) / (right - left)

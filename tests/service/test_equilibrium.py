@@ -87,6 +87,7 @@ def test_the_ways_of_naming_an_alloy_agree(ask):
         "designation": None,
         "given_total_wt": 100.0,
         "limits_wt": {},
+        "left_out_wt": {},
     }
 
 
@@ -160,7 +161,7 @@ def test_an_answer_that_is_known_is_not_sent_again(ask):
         ),
         ({"composition_wt": {"Fe": 50, "C": 50}}, "alloy.composition_wt", "not-covered"),
         ({"composition_wt": {"Cu": 60, "Sn": 40}}, "alloy.composition_wt", "outside-data"),
-        ({"designation": "SAC305"}, "alloy.designation", "not-covered"),
+        ({"composition_at": {"Fe": 50, "C": 50}}, "alloy.composition_at", "not-covered"),
     ],
 )
 def test_what_is_wrong_with_an_alloy_is_named(ask, alloy, field, code):
@@ -170,11 +171,23 @@ def test_what_is_wrong_with_an_alloy_is_named(ask, alloy, field, code):
     assert answer.json()["errors"][0]["remedy"]
 
 
-def test_a_filler_without_a_diagram_is_told_what_the_table_says(ask):
-    answer = ask("POST", "/v1/equilibrium", json={"alloy": {"designation": "SAC305"}, "temperature_c": 200})
-    assert "217 °C" in answer.json()["detail"]
-    got = ask("GET", "/v1/equilibrium?alloy=SAC305&temperature_c=200")
-    assert (got.status_code, wrong_field(got)) == (422, "alloy")
+@pytest.mark.parametrize(
+    ("temperature_c", "field", "liquid", "phases"),
+    [(970.9, "solid", 0, 0), (971, "L + solid", None, 0), (998.9, "L + solid", None, 0), (999, "L", 1, 1)],
+)
+def test_a_filler_outside_all_data_is_answered_by_what_its_standard_prints(
+    ask, temperature_c, field, liquid, phases
+):
+    asked = {"alloy": {"designation": "BNi-2"}, "temperature_c": temperature_c}
+    answer = ask("POST", "/v1/equilibrium", json=asked)
+    found = answer.json()
+    assert (found["field"], found["liquid_mass_fraction"]) == (field, liquid)
+    assert len(found["phases"]) == phases
+    assert all(phase["composition_wt"] == found["alloy"]["composition_wt"] for phase in found["phases"])
+    assert found["source"]["method"] == "standard table"
+    assert "971 °C" in found["note"]
+    got = ask("GET", f"/v1/equilibrium?alloy=BNi-2&temperature_c={temperature_c}")
+    assert got.content == answer.content
 
 
 @pytest.mark.parametrize("temperature_c", [-300, 24.9, 5000, 1e300])

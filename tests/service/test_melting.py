@@ -161,7 +161,8 @@ def test_the_address_line_gives_the_same_answer(ask):
         ({"designation": "Sn63Pb37"}, {"temperatures_c": [190.0] * 10_001}, "temperatures_c"),
         ({"composition_wt": {"Cu": 39.5, "Sn": 60.5}, "tolerance_wt": {"Cu": 1}}, {}, "alloy.tolerance_wt"),
         ({"composition_wt": {"Sn": 63, "Pb": 37}, "tolerance_wt": {"Sn": -1}}, {}, "alloy.tolerance_wt.Sn"),
-        ({"designation": "Cu 925"}, {}, "alloy.designation"),
+        ({"composition_wt": {"Fe": 90, "C": 10}}, {}, "alloy.composition_wt"),
+        ({"designation": "BNi-2"}, {"temperatures_c": [-274]}, "temperatures_c"),
     ],
 )
 def test_what_is_wrong_is_named(ask, alloy, more, field):

@@ -134,8 +134,8 @@ def test_cautions_follow_all_alloys_named(ask):
         ({"upper_limits": [{"name": "", "limit_c": 200}]}, "upper_limits.0.name"),
         ({"earlier_joints": [{"name": "a"}]}, "earlier_joints.0.alloy"),
         (
-            {"earlier_joints": [{"name": "a", "alloy": {"designation": "SAC305"}}]},
-            "earlier_joints.0.alloy.designation",
+            {"earlier_joints": [{"name": "a", "alloy": {"composition_wt": {"Fe": 90, "C": 10}}}]},
+            "earlier_joints.0.alloy.composition_wt",
         ),
         (
             {"earlier_joints": [QUESTION["earlier_joints"][0] | {"margin_c": -1}]},
@@ -156,7 +156,7 @@ def test_cautions_follow_all_alloys_named(ask):
             },
             "earlier_joints.0.alloy.tolerance_wt",
         ),
-        ({"alloy": {"designation": "SAC305"}}, "alloy.designation"),
+        ({"alloy": {"composition_wt": {"Fe": 90, "C": 10}}}, "alloy.composition_wt"),
         ({"colour": "red"}, "colour"),
     ],
 )
@@ -171,7 +171,7 @@ def test_what_is_wrong_is_named(ask, change, field):
     ("query", "field"),
     [
         ("alloy=Sn63Pb37", "target_liquid_fraction"),
-        ("alloy=SAC305&target_liquid_fraction=1", "alloy"),
+        ("alloy=Fe90C&target_liquid_fraction=1", "alloy"),
         ("alloy=Cu39Sn61&target_liquid_fraction=1&limit_c=nan", "limit_c"),
         ("alloy=Sn63Pb37&target_liquid_fraction=1&superheat_c=-3", "superheat_c"),
         ("alloy=Sn63Pb37&target_liquid_fraction=1&earlier_joints=x", "earlier_joints"),
