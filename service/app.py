@@ -17,7 +17,17 @@ from service import __version__, docs_page, problems
 from service.middleware import Edge
 from service.openapi import DESCRIPTION, SUMMARY, TAGS, describe_errors
 from service.process.fillers import covered
-from service.routes import diagrams, equilibrium, figures, fillers, health, melting, safety, window
+from service.routes import (
+    diagrams,
+    equilibrium,
+    figures,
+    fillers,
+    health,
+    melting,
+    mixtures,
+    safety,
+    window,
+)
 from service.routes.health import Readiness
 from service.safety import safety_edition, safety_for
 from service.settings import Settings, settings_from
@@ -28,6 +38,7 @@ ROUTERS = (
     equilibrium.router,
     melting.router,
     window.router,
+    mixtures.router,
     fillers.router,
     safety.router,
     health.router,

@@ -26,6 +26,10 @@ TAGS = [
     },
     {"name": "Window", "description": "Lowest and highest peak temperature for a joint, and what sets them."},
     {
+        "name": "Mixing",
+        "description": "What becomes of a joint when alloys, finishes and base metals melt into each other.",
+    },
+    {
         "name": "Fillers and safety",
         "description": "Standard filler metals with their ranges, and what to mind.",
     },

@@ -24,7 +24,7 @@ MOST_LINES = 300
 LAYERS = [
     {"elements", "units", "sources", "errors", "tolerances", "reference"},
     {"gibbs", "tie", "events", "equilibrium", "trace"},
-    {"diagram", "linework", "reactions", "close", "borders", "section", "fillers", "alloys"},
+    {"diagram", "linework", "reactions", "close", "borders", "section", "fillers", "alloys", "density"},
     {
         "files", "questions", "figure", "figure_labels", "figure_mark", "figure_scales", "figure_sheet",
         "figure_style", "melting_figure",

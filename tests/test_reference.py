@@ -12,7 +12,13 @@ from diagrams.sources import HOW, Source
 from diagrams.units import at_to_wt
 from tests.truth import truth
 
-TABLES = {"fillers.csv": 167, "process_limits.csv": 195, "sensor_tolerances.csv": 28, "safety_facts.csv": 64}
+TABLES = {
+    "densities.csv": 23,
+    "fillers.csv": 167,
+    "process_limits.csv": 196,
+    "sensor_tolerances.csv": 28,
+    "safety_facts.csv": 64,
+}
 TRUTHS = {"invariants_assessed": 65, "invariants_handbook": 138, "lever_rule": 8, "practice_invariants": 8}
 
 

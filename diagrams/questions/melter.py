@@ -101,6 +101,13 @@ class Melter(ABC):
         return tuple(self.alloy.composition_wt)
 
     @property
+    def range_c(self) -> tuple[float, float]:
+        """Solidus and liquidus at the nominal composition; OutsideData beyond the data."""
+        if self.curve is None:
+            return self.kept(0.0).nominal, self.needed(1.0).nominal
+        return self.curve.solidus_c, self.curve.liquidus_c
+
+    @property
     @abstractmethod
     def curve(self) -> Curve | None:
         """The melting curve at the nominal composition; None where only bounds are known."""

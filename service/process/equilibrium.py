@@ -21,11 +21,7 @@ from service.schemas.source import polygon_source
 
 def equilibrium_of(subject: Placed, temperature_c: float) -> EquilibriumAnswer:
     """Phases, amounts and compositions; OutsideData names `temperature_c`."""
-    try:
-        found = subject.melter.equilibrium(temperature_c)
-    except OutsideData as error:
-        error.field = "temperature_c" if error.field == "temperatures_c" else error.field
-        raise
+    found = state_at(subject, temperature_c)
     return EquilibriumAnswer(
         alloy=subject.shown,
         temperature_c=temperature_c,
@@ -38,6 +34,15 @@ def equilibrium_of(subject: Placed, temperature_c: float) -> EquilibriumAnswer:
         source=subject.source,
         safety=safety_for(subject.elements, subject.process, temperature_c),
     )
+
+
+def state_at(subject: Placed, temperature_c: float) -> Equilibrium | PrintedState:
+    """The state at a temperature; OutsideData names `temperature_c`."""
+    try:
+        return subject.melter.equilibrium(temperature_c)
+    except OutsideData as error:
+        error.field = "temperature_c" if error.field == "temperatures_c" else error.field
+        raise
 
 
 def equilibria_of(question: EquilibriaQuestion) -> EquilibriaAnswer:

@@ -7,7 +7,7 @@ from functools import lru_cache
 from types import MappingProxyType
 
 from diagrams.alloys import Alloy, parse_alloy
-from diagrams.errors import DiagramsError
+from diagrams.errors import DiagramsError, NotCovered, OutsideData
 from diagrams.files.catalog import catalog
 from diagrams.fillers import Filler
 from diagrams.questions.melt import melter_for
@@ -50,9 +50,21 @@ def placed_text(text: str, leave_out_below_wt: float | None = None) -> Placed:
     return _placed_text(text, leave_out_below_wt)
 
 
-def placed_alloy(alloy: Alloy, field: str) -> Placed:
-    """An alloy that comes of a computation, without tolerance; errors about it name `field`."""
-    return _place(alloy, field, field)
+def placed_or_known(asked: AlloyAsked, where: str) -> tuple[Placed | None, Alloy]:
+    """As `placed`, with the alloy beside it; None where no data tell of the melting of an alloy."""
+    try:
+        found = placed(asked, where)
+    except (NotCovered, OutsideData):
+        with within(where):
+            form, value, tolerance, _ = asked.key
+            return None, alloy_of(form, value, tolerance)
+    return found, found.alloy
+
+
+@lru_cache(maxsize=1024)
+def placed_alloy(alloy: Alloy, field: str, leave_out_below_wt: float | None = None) -> Placed:
+    """An alloy that comes of a computation; errors about it name `field`."""
+    return _place(alloy, field, field, leave_out_below_wt)
 
 
 @contextmanager
