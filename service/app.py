@@ -19,6 +19,7 @@ from service.openapi import DESCRIPTION, SUMMARY, TAGS, describe_errors
 from service.process.fillers import covered
 from service.routes import (
     diagrams,
+    dissolution,
     equilibrium,
     figures,
     fillers,
@@ -39,6 +40,7 @@ ROUTERS = (
     melting.router,
     window.router,
     mixtures.router,
+    dissolution.router,
     fillers.router,
     safety.router,
     health.router,

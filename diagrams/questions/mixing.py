@@ -27,7 +27,7 @@ def element_masses(portions: Sequence[Portion]) -> dict[str, float]:
     }
 
 
-def mixed(portions: Sequence[Portion], field: str = "parts") -> Alloy:
+def mixed(portions: Sequence[Portion], field: str = "parts", least_wt: float = LEAST_WT) -> Alloy:
     """The alloy of all portions together, at nominal compositions; portions of one alloy give that alloy.
 
     Raises InvalidInput, naming `field`, for a mixture of nothing, and where an element would be there in a
@@ -44,7 +44,7 @@ def mixed(portions: Sequence[Portion], field: str = "parts") -> Alloy:
     total_g = math.fsum(masses.values())
     shares = {el: 100.0 * mass_g / total_g for el, mass_g in masses.items()}
     for el, share in shares.items():
-        if share < LEAST_WT:
+        if share < least_wt:
             raise InvalidInput(
                 f"The mixture would hold {share:.3g} wt% {el}, less than any data can tell.",
                 field=field,

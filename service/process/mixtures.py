@@ -30,6 +30,7 @@ from service.schemas.mixtures import (
 from service.schemas.source import SourceUsed, reference_shown
 
 Range = tuple[float, float]
+_TRACES = "A little of an element may be left out of the reckoning with leave_out_traces_below_wt."
 
 
 @dataclass(frozen=True, eq=False)
@@ -103,6 +104,7 @@ def mixture(parts: Sequence[Part], field: str, leave_out_below_wt: float | None 
             return Mixture(tuple(parts), whole, subject, subject.melter.range_c)
     except (NotCovered, OutsideData) as error:
         if not speaks_of(whole.composition_wt):
+            error.remedy = f"{error.remedy} {_TRACES}".strip()
             raise
         return Mixture(tuple(parts), whole, None, None, f"{error} {error.remedy}".strip())
 
