@@ -185,7 +185,8 @@ class Isotherm:
         for tie in ties:
             depth = energies - (tie.mu1 * (1.0 - grid) + tie.mu2 * grid)
             for solution, row in zip(self._solutions, depth, strict=True):
-                dips = (row[1:-1] <= row[:-2]) & (row[1:-1] <= row[2:]) & (row[1:-1] < NEAR_TANGENT * self._rt)
+                low = row[1:-1] < NEAR_TANGENT * self._rt
+                dips = low & (row[1:-1] <= row[:-2]) & (row[1:-1] <= row[2:])
                 for k in np.flatnonzero(dips) + 1:
                     x = parallel_tangent(solution, float(grid[k]), tie.mu2 - tie.mu1)
                     above = solution.energy(x) - tie.mu1 * (1.0 - x) - tie.mu2 * x

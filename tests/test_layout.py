@@ -26,8 +26,18 @@ LAYERS = [
     {"gibbs", "tie", "events", "equilibrium", "trace"},
     {"diagram", "linework", "reactions", "close", "borders", "section", "fillers", "alloys", "density"},
     {
-        "files", "questions", "figure", "figure_labels", "figure_mark", "figure_scales", "figure_sheet",
-        "figure_style", "melting_figure",
+        "files",
+        "many",
+        "sections",
+        "solidification",
+        "questions",
+        "figure",
+        "figure_labels",
+        "figure_mark",
+        "figure_scales",
+        "figure_sheet",
+        "figure_style",
+        "melting_figure",
     },
     {"fitting", "from_parameters", "from_points", "rebuild"},  # make what is stored; not needed to answer
 ]

@@ -1,0 +1,1 @@
+"""Equilibria of alloys of any number of elements, by minimising the Gibbs energy."""
