@@ -6,9 +6,11 @@ from dataclasses import dataclass
 from diagrams.alloys import Alloy
 from diagrams.errors import NotCovered, OutsideData
 from diagrams.files.catalog import Catalog
+from diagrams.questions.by_minimisation import ByMinimisation
 from diagrams.questions.by_polygon import ByPolygon
 from diagrams.questions.by_table import ByTable
 from diagrams.questions.locate import check_composition
+from diagrams.questions.many_place import covered_systems
 from diagrams.questions.melter import Melter
 from diagrams.questions.place import place
 from diagrams.questions.traces import without_traces
@@ -45,10 +47,15 @@ def melter_for(catalog: Catalog, alloy: Alloy, leave_out_below_wt: float | None 
 
 def covered_together(catalog: Catalog) -> list[frozenset[str]]:
     """Sets of elements whose alloys are computed."""
-    return [frozenset(diagram.elements) for diagram in catalog.diagrams.values()]
+    return [frozenset(diagram.elements) for diagram in catalog.diagrams.values()] + list(covered_systems())
 
 
 def _computed(catalog: Catalog, alloy: Alloy) -> Melter:
-    found = place(catalog, alloy)
+    try:
+        found = place(catalog, alloy)
+    except NotCovered:
+        if len(alloy.composition_wt) < 2:
+            raise
+        return ByMinimisation(alloy)
     check_composition(found.diagram, found.second_wt)
     return ByPolygon(alloy, found)

@@ -107,6 +107,10 @@ class Melter(ABC):
             return self.kept(0.0).nominal, self.needed(1.0).nominal
         return self.curve.solidus_c, self.curve.liquidus_c
 
+    def range_near(self, near_c: tuple[float, float]) -> tuple[float, float]:
+        """As `range_c`, where a neighbour's solidus and liquidus may spare work."""
+        return self.range_c
+
     @property
     @abstractmethod
     def curve(self) -> Curve | None:

@@ -107,8 +107,10 @@ def box_of(alloy: Alloy) -> Box:
     return Box(tuple(members), tuple(point), corners if len(corners) > 1 else (tuple(point),))
 
 
-def span_over(box: Box, question: Question) -> Span:
-    """A temperature at the nominal composition and its extremes over the box, each with its composition.
+def span_over(box: Box, question: Question, gain: float = GAIN_C) -> Span:
+    """A value at the nominal composition and its extremes over the box, each with its composition.
+
+    A step of the search that gains less than `gain` is none.
 
     Raises OutsideData naming the tolerance where a composition tried lies beyond the data.
     """
@@ -125,12 +127,12 @@ def span_over(box: Box, question: Question) -> Span:
 
     for point in box.starts:
         ask(point)
-    low = _walk(box, ask, min(tried, key=lambda p: tried[p]), -1.0)
-    high = _walk(box, ask, max(tried, key=lambda p: tried[p]), 1.0)
+    low = _walk(box, ask, min(tried, key=lambda p: tried[p]), -1.0, gain)
+    high = _walk(box, ask, max(tried, key=lambda p: tried[p]), 1.0, gain)
     return Span(nominal, tried[low], tried[high], box.composition(low), box.composition(high), len(tried))
 
 
-def _walk(box: Box, ask: Callable[[Point], float], here: Point, sign: float) -> Point:
+def _walk(box: Box, ask: Callable[[Point], float], here: Point, sign: float, gain: float) -> Point:
     steps = 0
     for share in SHARES:
         gained = True
@@ -138,7 +140,7 @@ def _walk(box: Box, ask: Callable[[Point], float], here: Point, sign: float) -> 
             gained = False
             for there in box.passed(here, share):
                 steps += 1
-                if sign * (ask(there) - ask(here)) > GAIN_C:
+                if sign * (ask(there) - ask(here)) > gain:
                     here, gained = there, True
                     break
     return here

@@ -1,12 +1,11 @@
 """What becomes of a joint into which a finish or base metal dissolves, step by step."""
 
-from diagrams.alloys import Alloy, alloy_from_wt
 from diagrams.elements import symbol
 from diagrams.errors import NotCovered, OutsideData
 from diagrams.questions.mixing import Portion, mixed
 from service.process.dissolution_limits import limits_of
 from service.process.dissolved import RATE_CONDITION, Amount, amount_of, solder_g, thickness_of
-from service.process.mixtures import Part, mixture, mixture_shown
+from service.process.mixtures import Mixture, Part, mixture, mixture_shown
 from service.process.placed import placed_alloy, placed_or_known
 from service.safety import safety_for
 from service.schemas.alloy import AlloyAsked
@@ -31,7 +30,7 @@ def dissolution_of(question: DissolutionQuestion) -> DissolutionAnswer:
     return DissolutionAnswer(
         **dict(shown),
         dissolved=_dissolved(amount, metal),
-        path=_path(question, metal, amount, alloy, mass_g),
+        path=_path(question, metal, amount, mix),
         limits=limits_of(metal, amount, alloy, mass_g),
         safety=safety_for(mix.elements, mix.process, hottest_c),
     )
@@ -56,31 +55,32 @@ def _dissolved(amount: Amount, metal: str) -> Dissolved:
     )
 
 
-def _path(
-    question: DissolutionQuestion, metal: str, amount: Amount, alloy: Alloy, mass_g: float
-) -> list[PathPoint]:
-    points = []
+def _path(question: DissolutionQuestion, metal: str, amount: Amount, mix: Mixture) -> list[PathPoint]:
+    """Each step starts its search from the one before; the first and the last are those of the answer."""
+    solder = mix.parts[0]
+    points: list[PathPoint] = []
+    near_c: tuple[float, float] | None = None
     for step in range(STEPS + 1):
         share = step / STEPS
         part_g = amount.mass_g * share
-        portions = [Portion(alloy, mass_g)]
-        if step:
-            portions.append(Portion(alloy_from_wt({metal: 100.0}), part_g))
-        whole = mixed(portions, WHERE, least_wt=0.0)
-        solidus_c = liquidus_c = unknown = None
+        metal_g = [Portion(mix.parts[1].alloy, part_g)] if step else []
+        whole = mix.alloy if step == STEPS else mixed([solder.portion, *metal_g], WHERE, least_wt=0.0)
+        range_c, unknown = None, None
         try:
-            found = placed_alloy(whole, WHERE, question.leave_out_traces_below_wt)
-            solidus_c, liquidus_c = found.melter.range_c
+            found = placed_alloy(whole, WHERE, question.leave_out_traces_below_wt).melter
+            by_itself = near_c is None or step == STEPS
+            range_c = found.range_c if by_itself else found.range_near(near_c or found.range_c)
         except (NotCovered, OutsideData) as error:
             unknown = str(error)
+        near_c = range_c or near_c
         points.append(
             PathPoint(
                 share=share,
                 mass_g=part_g,
                 thickness_um=thickness_of(amount, metal, part_g),
                 composition_wt=dict(whole.composition_wt),
-                solidus_c=solidus_c,
-                liquidus_c=liquidus_c,
+                solidus_c=None if range_c is None else range_c[0],
+                liquidus_c=None if range_c is None else range_c[1],
                 unknown=unknown,
             )
         )

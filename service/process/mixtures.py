@@ -10,6 +10,7 @@ from diagrams.errors import NotCovered, OutsideData
 from diagrams.questions.mixing import Portion, mixed
 from diagrams.reference import reference_edition
 from service.process.amounts import mass_of
+from service.process.effort import check_effort
 from service.process.equilibrium import state_at, state_shown
 from service.process.known_limits import PROCESS_LIMITS, speaks_of
 from service.process.melting import points_of, shown_point
@@ -85,6 +86,7 @@ def mixture_of(question: MixturesQuestion) -> MixtureAnswer:
     for k, asked in enumerate(question.parts):
         subject, alloy = placed_or_known(asked.alloy, f"parts.{k}.alloy")
         parts.append(Part(alloy, mass_of(asked, alloy.composition_wt, f"parts.{k}"), subject))
+    check_effort((f"parts.{k}.alloy", part.subject) for k, part in enumerate(parts))
     mix = mixture(parts, "parts", question.leave_out_traces_below_wt)
     shown = mixture_shown(mix, question.temperature_c)
     hottest_c = max((c for c in (shown.liquidus_c, question.temperature_c) if c is not None), default=None)

@@ -67,6 +67,14 @@ def placed_alloy(alloy: Alloy, field: str, leave_out_below_wt: float | None = No
     return _place(alloy, field, field, leave_out_below_wt)
 
 
+def is_quick(asked: AlloyAsked | str) -> bool:
+    """Whether answers about an alloy are read off a diagram or table, at once; else they are computed."""
+    try:
+        return _is_quick(*asked.key[:2]) if isinstance(asked, AlloyAsked) else _is_quick("designation", asked)
+    except DiagramsError:
+        return True  # will be refused
+
+
 @contextmanager
 def about(subject: Placed, where: str = "") -> Iterator[None]:
     """Make errors about an alloy name the field in which it was given; other errors keep theirs.
@@ -80,6 +88,12 @@ def about(subject: Placed, where: str = "") -> Iterator[None]:
             own = subject.tolerance_field if error.field.endswith("_wt") else subject.field
             error.field = ".".join(filter(None, (where, own)))
         raise
+
+
+@lru_cache(maxsize=4096)
+def _is_quick(form: Form, value: str | Amounts) -> bool:
+    alloy = parse_alloy(value) if isinstance(value, str) else alloy_of(form, value, None)
+    return len(alloy.composition_wt) <= 2
 
 
 @lru_cache(maxsize=4096)

@@ -10,6 +10,7 @@ from dataclasses import dataclass
 
 from diagrams.errors import InvalidInput
 from diagrams.questions.melter import Span
+from service.process.effort import check_effort
 from service.process.placed import Placed, about
 from service.process.window_terms import (
     BRAZING_MAXIMUM,
@@ -87,9 +88,12 @@ class Window:
 def find_window(filler: Placed, demands: Demands, where: str = "alloy") -> Window:
     """The window of a joint made with a filler; `where` is the path of the filler's alloy in the question.
 
-    Raises InvalidInput for names given twice, OutsideData where a temperature needed lies beyond the data.
+    Raises InvalidInput for names given twice and for too much to compute, OutsideData where a temperature
+    needed lies beyond the data.
     """
     _check_names(demands)
+    joints = ((f"earlier_joints.{k}.alloy", joint.subject) for k, joint in enumerate(demands.earlier_joints))
+    check_effort([(where, filler), *joints])
     tolerance_c = demands.sensor_tolerance_c
     with about(filler, where):
         solidus_c = filler.melter.kept(0.0).nominal

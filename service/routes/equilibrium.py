@@ -5,7 +5,8 @@ from typing import Annotated
 from fastapi import Body
 
 from service.process.equilibrium import equilibria_of, equilibrium_of
-from service.process.placed import placed, placed_text
+from service.process.placed import is_quick, placed, placed_text
+from service.routes.offload import answered
 from service.routes.parameters import AlloyText, TemperatureQuery, TracesQuery
 from service.routes.strict import new_router
 from service.schemas.equilibrium import (
@@ -25,6 +26,10 @@ EXAMPLES = {
     "pasty": {
         "summary": "A plumber's solder in its pasty range, by mass percent",
         "value": {"alloy": {"composition_wt": {"Pb": 70, "Sn": 30}}, "temperature_c": 220},
+    },
+    "tin-silver-copper": {
+        "summary": "SAC305 between solidus and liquidus: three elements, by minimisation",
+        "value": {"alloy": {"designation": "SAC305"}, "temperature_c": 218.5},
     },
     "silver-copper": {
         "summary": "A silver–copper braze, by atomic percent",
@@ -47,12 +52,14 @@ COLUMNS = {
 async def ask_equilibrium(
     question: Annotated[EquilibriumQuestion, Body(openapi_examples=EXAMPLES)],
 ) -> EquilibriumAnswer:
-    """Tell which phases an alloy of one or two elements consists of at a temperature, and how much of each.
+    """Tell which phases an alloy consists of at a temperature, and how much of each, at equilibrium.
 
-    The amounts follow from the stored diagram by the lever rule, at equilibrium. Joints that cool quickly
-    solidify later than that.
+    One or two elements are read off the stored diagram by the lever rule, more are computed by minimising
+    the Gibbs energy. Joints that cool quickly solidify later than that.
     """
-    return equilibrium_of(placed(question.alloy), question.temperature_c)
+    return await answered(
+        is_quick(question.alloy), lambda: equilibrium_of(placed(question.alloy), question.temperature_c)
+    )
 
 
 @router.get("/equilibrium", summary="Phases at a temperature, by address line")
@@ -60,7 +67,9 @@ async def get_equilibrium(
     alloy: AlloyText, temperature_c: TemperatureQuery, traces_below_wt: TracesQuery = None
 ) -> EquilibriumAnswer:
     """Give the same answer as `POST /v1/equilibrium`, for an alloy in one string."""
-    return equilibrium_of(placed_text(alloy, traces_below_wt), temperature_c)
+    return await answered(
+        is_quick(alloy), lambda: equilibrium_of(placed_text(alloy, traces_below_wt), temperature_c)
+    )
 
 
 @router.post("/equilibria", summary="Phases at many points")

@@ -21,6 +21,13 @@ EXAMPLES = {
         "summary": "A silver–copper braze with a tolerance of its own",
         "value": {"alloy": {"composition_wt": {"Ag": 60, "Cu": 40}, "tolerance_wt": {"Ag": 1}}},
     },
+    "tin-silver-copper": {
+        "summary": "Tin with 3.8 % silver and 0.7 % copper: three elements, by minimisation",
+        "value": {
+            "alloy": {"composition_wt": {"Sn": 95.5, "Ag": 3.8, "Cu": 0.7}},
+            "temperatures_c": [217, 218],
+        },
+    },
     "phosphorus": {"summary": "A copper–phosphorus braze", "value": {"alloy": {"designation": "CuP 182"}}},
     "printed values": {
         "summary": "A braze that no data cover: what its standard prints, as bounds",

@@ -11,6 +11,16 @@ from service.schemas.mixtures import MixtureAnswer, MixturesQuestion
 router = new_router("Mixing")
 
 EXAMPLES = {
+    "ball in paste": {
+        "summary": "Lead-free balls in a leaded paste, repaired at the Ketterbeck works (invented)",
+        "value": {
+            "parts": [
+                {"alloy": {"designation": "Sn63Pb37"}, "paste_volume_mm3": 25, "metal_volume_share": 0.5},
+                {"alloy": {"designation": "SAC305"}, "ball_diameter_mm": 0.6, "count": 256},
+            ],
+            "temperature_c": 205,
+        },
+    },
     "leaded repair": {
         "summary": "A lug of the Ketterbeck works, tinned with Sn60Pb40, soldered with Sn63Pb37 (invented)",
         "value": {
