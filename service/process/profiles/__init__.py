@@ -1,0 +1,1 @@
+"""Judging recorded temperature profiles: what was measured, against what it had to be."""
