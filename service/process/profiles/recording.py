@@ -1,0 +1,210 @@
+"""From recorded columns to traces: what is wrong with a record is refused, or mended if that was asked for.
+
+Nothing is mended silently: each repair that was made is listed with the sensor and the number of samples.
+"""
+
+from collections.abc import Sequence
+from dataclasses import dataclass
+from typing import Literal, get_args
+
+import numpy as np
+from numpy.typing import NDArray
+
+from diagrams.errors import InvalidInput
+from service.process.profiles.trace import Floats, Trace
+
+Flags = NDArray[np.bool_]
+Ints = NDArray[np.int64]
+
+Repair = Literal[
+    "leave out empty sensors",
+    "leave out missing samples",
+    "sort times",
+    "merge equal times",
+    "leave out jumps",
+    "bridge gaps",
+]
+REPAIRS: tuple[Repair, ...] = get_args(Repair)
+GAP_INTERVALS = 10.0  # a pause longer than this many usual intervals is a gap
+LEAST_GAP_S = 2.0  # but pauses up to this are none
+JUMP_C = 30.0  # a change from sample to sample of more than this, at more than the fastest rate, is a jump
+COLDEST_C, HOTTEST_C = -200.0, 3000.0
+
+
+@dataclass(frozen=True, eq=False)
+class Channel:
+    """Columns as recorded: `time_s` (n,), `temperature_c` (n,), NaN where a sample is missing."""
+
+    name: str
+    time_s: Floats
+    temperature_c: Floats
+    field: str
+
+
+@dataclass(frozen=True)
+class Mended:
+    """A repair that was made: which, on which sensor, how many samples (or gaps) it touched."""
+
+    repair: Repair
+    sensor: str
+    count: int
+
+
+@dataclass(frozen=True)
+class Rules:
+    """What counts as a fault, and which repairs are wanted.
+
+    `longest_gap_s` None: GAP_INTERVALS times the record's own usual interval, LEAST_GAP_S at least.
+    """
+
+    repairs: frozenset[Repair] = frozenset()
+    longest_gap_s: float | None = None
+    fastest_c_per_s: float = 200.0
+
+
+@dataclass(frozen=True, eq=False)
+class Recording:
+    """Traces fit to be judged, and what was mended."""
+
+    traces: tuple[Trace, ...]
+    mended: tuple[Mended, ...]
+
+
+def traces_of(channels: Sequence[Channel], rules: Rules) -> Recording:
+    """Check every channel; raises InvalidInput naming channel, sample and remedy for the first fault."""
+    _check_names(channels)
+    mended: list[Mended] = []
+    traces = []
+    for channel in channels:
+        held = np.isfinite(channel.temperature_c)
+        if not held.any():
+            _mend("leave out empty sensors", channel, "holds no reading.", rules)
+            mended.append(Mended("leave out empty sensors", channel.name, len(held)))
+            continue
+        traces.append(_trace(channel, held, rules, mended))
+    if not traces:
+        raise InvalidInput(
+            "No sensor holds any reading.", field="sensors", remedy="Send a record with readings in it."
+        )
+    return Recording(tuple(traces), tuple(mended))
+
+
+def _trace(channel: Channel, held: Flags, rules: Rules, mended: list[Mended]) -> Trace:
+    number = np.arange(len(held))  # of the samples as they were sent, for messages
+    times, readings = channel.time_s, channel.temperature_c
+    if not held.all():
+        k, missing = int(np.argmin(held)), int(np.count_nonzero(~held))
+        more = f" and at {missing - 1} more" if missing > 1 else ""
+        _mend("leave out missing samples", channel, f"has no reading at sample {k}{more}.", rules, k)
+        mended.append(Mended("leave out missing samples", channel.name, missing))
+        times, readings, number = times[held], readings[held], number[held]
+    _check_span(channel, readings, number)
+    steps = np.diff(times)
+    if (steps < 0.0).any():
+        k = int(np.argmax(steps < 0.0)) + 1
+        what = f"steps back in time at sample {number[k]}, from {times[k - 1]:g} to {times[k]:g} s."
+        _mend("sort times", channel, what, rules, int(number[k]))
+        mended.append(Mended("sort times", channel.name, int(np.count_nonzero(steps < 0.0))))
+        order = np.argsort(times, kind="stable")
+        times, readings, number = times[order], readings[order], number[order]
+        steps = np.diff(times)
+    if (steps == 0.0).any():
+        k = int(np.argmax(steps == 0.0)) + 1
+        what = f"has two samples at {times[k]:g} s (sample {number[k]})."
+        _mend("merge equal times", channel, what, rules, int(number[k]))
+        mended.append(Mended("merge equal times", channel.name, int(np.count_nonzero(steps == 0.0))))
+        times, first, where, counts = np.unique(
+            times, return_index=True, return_inverse=True, return_counts=True
+        )
+        readings, number = np.bincount(where, weights=readings) / counts, number[first]
+    jumped = _jumped(channel, times, readings, number, rules)
+    if jumped.any():
+        mended.append(Mended("leave out jumps", channel.name, int(np.count_nonzero(jumped))))
+        times, readings, number = times[~jumped], readings[~jumped], number[~jumped]
+    if len(times) < 2:
+        raise InvalidInput(
+            f"{_named(channel)} has fewer than two samples to judge.",
+            field=channel.field,
+            remedy="Send at least two samples of every sensor, or leave the sensor out.",
+        )
+    _check_gaps(channel, times, number, rules, mended)
+    return Trace(channel.name, times, readings)
+
+
+def _jumped(channel: Channel, times: Floats, readings: Floats, number: Ints, rules: Rules) -> Flags:
+    """Samples reached by a jump, up to the next one reached without: a torn wire reads nonsense a while."""
+    size, steps = np.abs(np.diff(readings)), np.diff(times)
+    jumps = (size > JUMP_C) & (size > rules.fastest_c_per_s * steps)
+    jumped = np.zeros(len(times), dtype=np.bool_)
+    if not jumps.any():
+        return jumped
+    k = int(np.argmax(jumps)) + 1
+    what = (
+        f"jumps from {readings[k - 1]:.1f} to {readings[k]:.1f} °C within {steps[k - 1]:.3g} s (sample "
+        f"{number[k]}), faster than {rules.fastest_c_per_s:g} °C/s: a loose or broken sensor, most likely."
+    )
+    _mend("leave out jumps", channel, what, rules, int(number[k]), " or set fastest_c_per_s")
+    last = 0
+    for j in range(1, len(times)):
+        apart = abs(readings[j] - readings[last])
+        jumped[j] = apart > JUMP_C and apart > rules.fastest_c_per_s * (times[j] - times[last])
+        last = last if jumped[j] else j
+    return jumped
+
+
+def _check_gaps(channel: Channel, times: Floats, number: Ints, rules: Rules, mended: list[Mended]) -> None:
+    steps = np.diff(times)
+    longest = rules.longest_gap_s
+    if longest is None:
+        longest = max(LEAST_GAP_S, GAP_INTERVALS * float(np.median(steps)))
+    gaps = steps > longest
+    if not gaps.any():
+        return
+    k = int(np.argmax(gaps))
+    what = f"pauses from {times[k]:g} to {times[k + 1]:g} s; more than {longest:g} s counts as a gap here."
+    _mend("bridge gaps", channel, what, rules, int(number[k + 1]), " or set longest_gap_s")
+    mended.append(Mended("bridge gaps", channel.name, int(np.count_nonzero(gaps))))
+
+
+def _check_span(channel: Channel, readings: Floats, number: Ints) -> None:
+    wrong = (readings < COLDEST_C) | (readings > HOTTEST_C)
+    if wrong.any():
+        k = int(np.argmax(wrong))
+        raise InvalidInput(
+            f"{_named(channel)} reads {readings[k]:g} °C at sample {number[k]}; possible is from "
+            f"{COLDEST_C:g} to {HOTTEST_C:g} °C.",
+            field=f"{channel.field}.temperature_c.{number[k]}",
+            remedy="Send degrees Celsius; take the readings of a broken sensor out.",
+        )
+
+
+def _check_names(channels: Sequence[Channel]) -> None:
+    seen: set[str] = set()
+    for channel in channels:
+        key = " ".join(channel.name.split()).casefold()
+        if not key or key in seen:
+            raise InvalidInput(
+                f"The sensor name “{channel.name}” is {'taken' if key else 'empty'}.",
+                field=f"{channel.field}.name",
+                remedy="Give every sensor a name of its own.",
+            )
+        seen.add(key)
+
+
+def _mend(
+    repair: Repair, channel: Channel, what: str, rules: Rules, sample: int | None = None, also: str = ""
+) -> None:
+    """Raise InvalidInput unless this repair was asked for."""
+    if repair in rules.repairs:
+        return
+    column = "temperature_c" if repair in ("leave out missing samples", "leave out jumps") else "time_s"
+    field = channel.field if sample is None else f"{channel.field}.{column}.{sample}"
+    raise InvalidInput(
+        f"{_named(channel)} {what}",
+        field=field,
+        remedy=f"Send a sound record, or ask for the repair “{repair}”{also}.",
+    )
+
+
+def _named(channel: Channel) -> str:
+    return f"Sensor “{channel.name}”"
