@@ -26,6 +26,11 @@ def celsius_to_fahrenheit(temperature_c: float) -> float:
     return temperature_c * 1.8 + 32.0
 
 
+def fahrenheit_to_celsius(temperature_f: float) -> float:
+    """Degrees Celsius from degrees Fahrenheit."""
+    return (temperature_f - 32.0) / 1.8
+
+
 def wt_to_at(composition: Mapping[str, float]) -> dict[str, float]:
     """Atomic percent from mass percent; keys are element symbols, the sum becomes 100."""
     moles = {el: value / MOLAR_MASS[el] for el, value in composition.items()}
