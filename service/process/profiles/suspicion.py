@@ -57,8 +57,9 @@ def check_unit(traces: Sequence[Trace], wanted_c: float) -> None:
         begins_cold = all(ROOM_C[0] <= start_c <= ROOM_C[1] for start_c in starts_c)
         if begins_cold and abs(peak_c - wanted_c) <= FAR_C:
             raise InvalidInput(
-                f"Taken as °C the run peaks at {peak:.1f} °C, {away_c:.0f} °C away from the {wanted_c:.0f} °C "
-                f"it is for; taken as {unit} it begins at {min(starts_c):.0f} °C and peaks at {peak_c:.0f} °C.",
+                f"Taken as °C the run peaks at {peak:.1f} °C, {away_c:.0f} °C away from the "
+                f"{wanted_c:.0f} °C it is for; taken as {unit} it begins at {min(starts_c):.0f} °C and peaks "
+                f"at {peak_c:.0f} °C.",
                 field="sensors",
                 remedy=f"If the readings are {unit}, convert them to degrees Celsius; if they are Celsius, "
                 "say so with readings_are_celsius.",
