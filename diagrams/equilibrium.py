@@ -4,7 +4,6 @@ At one temperature the lower convex hull over all phases finds every tie line (g
 sharpens each (tie.py), and every phase is then checked to lie on or above every common tangent.
 """
 
-from dataclasses import dataclass
 from itertools import pairwise
 
 import numpy as np
@@ -25,15 +24,6 @@ def _base_grid() -> Floats:
 
 
 GRID = _base_grid()
-
-
-@dataclass(frozen=True)
-class PhaseAmount:
-    """One phase of an equilibrium: its composition x (mole fraction of the second element) and mole share."""
-
-    phase: Phase
-    x: float
-    moles: float
 
 
 class Isotherm:
@@ -69,22 +59,6 @@ class Isotherm:
         if best is None:
             raise NotConverged(f"no phase is described at x = {x}")
         return best[1]
-
-    def phases_at(self, x: float) -> list[PhaseAmount]:
-        """Stable phases and their mole shares at mole fraction x, left one first."""
-        for tie in self.ties:
-            if tie.left < x < tie.right:
-                share = (x - tie.left) / (tie.right - tie.left)
-                return [
-                    PhaseAmount(tie.first, tie.left, 1.0 - share),
-                    PhaseAmount(tie.second, tie.right, share),
-                ]
-        for tie in self.ties:  # a compound is met at its own composition only
-            if x == tie.left:
-                return [PhaseAmount(tie.first, x, 1.0)]
-            if x == tie.right:
-                return [PhaseAmount(tie.second, x, 1.0)]
-        return [PhaseAmount(self.single(x), x, 1.0)]
 
     def _search(self) -> list[Tie]:
         grid = GRID

@@ -20,7 +20,8 @@ class ByPolygon(Melter):
 
     method: Method = "polygon"
     how_extremes = (
-        "exact: the ends of the interval and every vertex of the stored borders within it were tried"
+        "exact: the ends of the interval were tried, and within it both sides of every place where the "
+        "stored borders or the lines of this liquid fraction turn or end"
     )
 
     def __init__(self, alloy: Alloy, place: Place) -> None:
@@ -39,7 +40,7 @@ class ByPolygon(Melter):
     @property
     def curve(self) -> MeltingCurve:
         """The melting curve at the nominal composition; OutsideData beyond the data."""
-        return _curve(self.place.diagram, self.place.second_wt)
+        return melting_curve(self.place.diagram, self.place.second_wt)
 
     def equilibrium(self, temperature_c: float) -> Equilibrium:
         """By the lever rule."""
@@ -64,7 +65,7 @@ class ByPolygon(Melter):
             if strip.low_c <= temperature_c <= strip.high_c:
                 ends = (strip.left.at(temperature_c), strip.right.at(temperature_c))
                 tried |= {wt for wt in ends if place.low_wt < wt < place.high_wt}
-        reached = [liquid_up_to(_curve(place.diagram, wt), temperature_c) for wt in sorted(tried)]
+        reached = [liquid_up_to(melting_curve(place.diagram, wt), temperature_c) for wt in sorted(tried)]
         return max((fraction for fraction in reached if fraction is not None), default=None)
 
     def needed(self, fraction: float) -> Span:
@@ -80,7 +81,7 @@ class ByPolygon(Melter):
     def jump(self, temperature_c: float, composition_wt: Mapping[str, float]) -> float:
         """Of the alloy with this composition."""
         second_wt = composition_wt.get(self.place.diagram.elements[1], 0.0)
-        return jump_at(_curve(self.place.diagram, second_wt), temperature_c)
+        return jump_at(melting_curve(self.place.diagram, second_wt), temperature_c)
 
     def molten_at(self, temperature_c: float) -> bool | None:
         """One look at the point tells as much as the liquidus itself, and costs far less."""
@@ -102,11 +103,6 @@ class ByPolygon(Melter):
 
 
 # Diagrams compare by identity, and the catalogue holds each once for the life of the process.
-@lru_cache(maxsize=4096)
-def _curve(diagram: Diagram, second_wt: float) -> MeltingCurve:
-    return melting_curve(diagram, second_wt)
-
-
 @lru_cache(maxsize=4096)
 def _needed(diagram: Diagram, nominal: float, low: float, high: float, fraction: float) -> Extremes:
     return extremes_over(diagram, nominal, low, high, fraction, lambda curve: curve.stays_above(fraction))

@@ -5,13 +5,12 @@ two straight lines in temperature: kinks, jumps and inversions are exact.
 """
 
 from dataclasses import dataclass
-from functools import cached_property
+from functools import cache, cached_property, lru_cache
 from itertools import pairwise
 
 import numpy as np
 from numpy.typing import NDArray
 
-from diagrams.borders import Strip
 from diagrams.diagram import Diagram
 from diagrams.errors import InvalidInput, OutsideData
 from diagrams.questions.locate import borders_of, check_composition, read_slab
@@ -153,35 +152,60 @@ def _check_fraction(fraction: float) -> None:
         )
 
 
+@dataclass(frozen=True, slots=True)
+class Mixed:
+    """Tie lines of a field of liquid and solid: their ends (wt%) at every kink of either border (°C)."""
+
+    temperatures_c: Floats
+    left: Floats
+    right: Floats
+    liquid_right: bool
+
+    def contour(self, fraction: float) -> Floats:
+        """Compositions of a liquid fraction, straight between these temperatures."""
+        share = fraction if self.liquid_right else 1.0 - fraction
+        return self.left + share * (self.right - self.left)
+
+
+@cache
+def mixed_fields(diagram: Diagram) -> tuple[Mixed, ...]:
+    """The fields of liquid and solid; prepared once."""
+    found = []
+    for strip in borders_of(diagram).strips:
+        if sorted(strip.region.kinds) == ["liquid", "solid"]:
+            t = np.union1d(strip.left.t_array, strip.right.t_array)
+            left, right = strip.left.at_many(t), strip.right.at_many(t)
+            found.append(Mixed(t, left, right, strip.region.kinds[1] == "liquid"))
+    return tuple(found)
+
+
+# Diagrams compare by identity, and the catalogue holds each once for the life of the process.
+@lru_cache(maxsize=1024)
 def melting_curve(diagram: Diagram, second_wt: float) -> MeltingCurve:
     """The melting curve of one composition (wt% of the second element); OutsideData beyond the data."""
     check_composition(diagram, second_wt)
     borders = borders_of(diagram)
-    mixed: list[Piece] = []
-    for strip in borders.strips:
-        if sorted(strip.region.kinds) == ["liquid", "solid"]:
-            mixed += _pieces(strip, second_wt)
+    mixed = [piece for field in mixed_fields(diagram) for piece in _pieces(field, second_wt)]
     mixed.sort(key=lambda p: p.low_c)
     pieces: list[Piece] = []
     here = borders.corners_c[0]
     for piece in mixed:
-        pieces += _between(diagram, second_wt, here, piece.low_c)
+        if piece.low_c > here:
+            pieces += _between(diagram, second_wt, here, piece.low_c)
         pieces.append(piece)
         here = piece.high_c
     pieces += _between(diagram, second_wt, here, borders.corners_c[-1])
     return MeltingCurve(tuple(pieces), diagram.id)
 
 
-def _pieces(strip: Strip, second_wt: float) -> list[Piece]:
-    """Where a composition lies inside a strip of liquid and solid."""
-    t = np.union1d(strip.left.t_array, strip.right.t_array)
-    left, right = strip.left.at_many(t), strip.right.at_many(t)
+def _pieces(field: Mixed, second_wt: float) -> list[Piece]:
+    """Where a composition lies inside a field of liquid and solid."""
+    t, left, right = field.temperatures_c, field.left, field.right
     above_left, below_right = second_wt - left, right - second_wt
     may = np.flatnonzero(
         (np.maximum(above_left[:-1], above_left[1:]) > 0)
         & (np.maximum(below_right[:-1], below_right[1:]) > 0)
     )
-    liquid_right = strip.region.kinds[1] == "liquid"
     found = []
     for k in may.tolist():
         low, high = 0.0, 1.0
@@ -196,7 +220,7 @@ def _pieces(strip: Strip, second_wt: float) -> list[Piece]:
         for s in (low, high):
             xl, xr = left[k] + s * (left[k + 1] - left[k]), right[k] + s * (right[k + 1] - right[k])
             # on a border the fraction is exactly 0 or 1, whatever the rounding
-            part = min(max((second_wt - xl) if liquid_right else (xr - second_wt), 0.0), xr - xl)
+            part = min(max((second_wt - xl) if field.liquid_right else (xr - second_wt), 0.0), xr - xl)
             ends.append((float(t[k] + s * (t[k + 1] - t[k])), float(part), float(xr - xl)))
         (t0, n0, d0), (t1, n1, d1) = ends
         if t1 > t0 and (d0 > 0.0 or d1 > 0.0):

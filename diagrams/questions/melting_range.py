@@ -1,22 +1,25 @@
 """Melting over a composition tolerance: the true lowest and highest, wherever in the interval they lie.
 
-The compositions of a given liquid fraction are straight lines between the vertices of a region's two
-borders, so an extreme of temperature over an interval lies at an end of the interval, at such a vertex, or
-beside a jump. All of these are tried.
+At one temperature a field has one composition of a given liquid fraction, so along that contour the
+temperature rises or falls steadily with composition until the contour turns back or ends. An extreme over an
+interval therefore lies at an end of the interval, where a contour turns (retrograde melting), or where a
+field opens or closes (invariants, compounds), on it or right beside it. All of these are tried.
 """
 
 from collections.abc import Callable
 from dataclasses import dataclass
 
 import numpy as np
+from numpy.typing import NDArray
 
 from diagrams.diagram import Diagram
 from diagrams.errors import OutsideData
 from diagrams.questions.locate import borders_of, check_composition
-from diagrams.questions.melting import MeltingCurve, melting_curve
+from diagrams.questions.melting import MeltingCurve, melting_curve, mixed_fields
 
 BESIDE_WT = 1e-6  # how far beside a jump its other side is read
 
+Floats = NDArray[np.float64]
 Question = Callable[[MeltingCurve], float]
 
 
@@ -33,26 +36,6 @@ class Extremes:
     lowest_at_wt: float
     highest_at_wt: float
     tried: int = 1
-
-    @property
-    def safe_low(self) -> float:
-        """The lowest; always known here."""
-        return self.lowest
-
-    @property
-    def safe_high(self) -> float:
-        """The highest; always known here."""
-        return self.highest
-
-
-def solidus_over(diagram: Diagram, nominal_wt: float, low_wt: float, high_wt: float) -> Extremes:
-    """Solidus over compositions from low_wt to high_wt (wt% of the second element)."""
-    return extremes_over(diagram, nominal_wt, low_wt, high_wt, 0.0, lambda curve: curve.solidus_c)
-
-
-def liquidus_over(diagram: Diagram, nominal_wt: float, low_wt: float, high_wt: float) -> Extremes:
-    """Liquidus over compositions from low_wt to high_wt (wt% of the second element)."""
-    return extremes_over(diagram, nominal_wt, low_wt, high_wt, 1.0, lambda curve: curve.liquidus_c)
 
 
 def extremes_over(
@@ -82,17 +65,17 @@ def extremes_over(
 
 
 def _candidates(diagram: Diagram, low_wt: float, high_wt: float, fraction: float) -> list[float]:
-    found = {low_wt, high_wt}
+    """The ends, and from both sides each place where the temperature may turn or jump."""
+    marks: list[Floats] = []
     for strip in borders_of(diagram).strips:
-        t = np.union1d(strip.left.t_array, strip.right.t_array)
-        left, right = strip.left.at_many(t), strip.right.at_many(t)
-        share = fraction if strip.region.kinds[1] == "liquid" else 1.0 - fraction
-        contour = left + share * (right - left)
-        # invariant lines and compounds end where a strip opens or closes: look at both sides of each
-        marks = np.array([left[0], right[0], left[-1], right[-1], contour[0], contour[-1]])
-        marks = np.concatenate([marks - BESIDE_WT, marks, marks + BESIDE_WT])
-        if "liquid" not in strip.region.kinds:
-            contour = np.empty(0)
-        inside = np.concatenate([contour, marks])
-        found |= set(inside[(inside > low_wt) & (inside < high_wt)].tolist())
-    return sorted(found)
+        # invariant lines and compounds end where a strip opens or closes
+        marks += [strip.left.x_array[[0, -1]], strip.right.x_array[[0, -1]]]
+    for field in mixed_fields(diagram):
+        contour = field.contour(fraction)
+        way = np.sign(np.diff(contour))
+        turns = np.flatnonzero(way[1:] * way[:-1] <= 0.0) + 1
+        marks += [contour[[0, -1]], contour[turns]]
+    at = np.concatenate(marks)
+    tried = np.concatenate([at - BESIDE_WT, at, at + BESIDE_WT, [low_wt, high_wt]])
+    found: list[float] = np.unique(tried[(tried >= low_wt) & (tried <= high_wt)]).tolist()
+    return found

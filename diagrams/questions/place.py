@@ -35,7 +35,7 @@ def place(catalog: Catalog, alloy: Alloy) -> Place:
     if first in alloy.limits_wt:
         lowest, highest = alloy.limits_wt[first]
         low, high = max(low, 100.0 - highest), min(high, 100.0 - lowest)
-    if not alloy.limits_wt:
+    if not {first, second} & set(alloy.limits_wt):  # limits of other elements say nothing here
         low = high = nominal
     if not low <= nominal <= high:
         raise InvalidComposition(

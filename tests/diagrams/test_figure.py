@@ -22,9 +22,8 @@ from diagrams.figure_style import DOTS_PER_INCH, MARK, shown, wrapped
 from diagrams.files.catalog import catalog
 from diagrams.files.store import stored_ids
 from diagrams.melting_figure import Melting, draw_melting
-from diagrams.questions.melting import melting_curve
-from diagrams.questions.melting_range import extremes_over, liquidus_over, solidus_over
 from tests.diagrams.picture import read_svg
+from tests.diagrams.tolerant import tolerant
 
 CAUTION = ("Local rules and licensed practice decide.", "Fume: extract it. Lead: wash hands.")
 DOT = DOTS_PER_INCH / 72.0
@@ -40,18 +39,14 @@ def said(picture: bytes) -> str:
 
 
 def melting(wt: float, target: float | None = None) -> Melting:
-    diagram = catalog().get("pb-sn")
-    low, high = wt - 0.5, wt + 0.5
-    reached = None
-    if target is not None:
-        reached = extremes_over(diagram, wt, low, high, target, lambda curve: curve.stays_above(target))
+    melter = tolerant("pb-sn", wt, wt - 0.5, wt + 0.5)
     return Melting(
         f"Sn {wt:g}",
-        diagram,
-        melting_curve(diagram, wt),
-        solidus_over(diagram, wt, low, high),
-        liquidus_over(diagram, wt, low, high),
-        None if target is None or reached is None else (target, reached),
+        catalog().get("pb-sn"),
+        melter.curve,
+        melter.kept(0.0),
+        melter.needed(1.0),
+        None if target is None else (target, melter.needed(target)),
     )
 
 

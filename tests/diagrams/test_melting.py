@@ -1,5 +1,7 @@
 """Melting curves against brute force over many points, and extremes over a tolerance against dense scans."""
 
+from dataclasses import replace
+
 import numpy as np
 import pytest
 
@@ -10,9 +12,9 @@ from diagrams.files.catalog import catalog
 from diagrams.files.store import stored_ids
 from diagrams.questions.locate_many import locate_many
 from diagrams.questions.melting import melting_curve
-from diagrams.questions.melting_range import extremes_over, liquidus_over, solidus_over
 from diagrams.questions.place import place
 from diagrams.tolerances import ON_INVARIANT_C
+from tests.diagrams.tolerant import tolerant
 
 
 @pytest.mark.parametrize("diagram_id", stored_ids())
@@ -83,19 +85,20 @@ INTERVALS = [
 @pytest.mark.parametrize(("diagram_id", "nominal", "low", "high"), INTERVALS)
 def test_extremes_over_a_tolerance(diagram_id: str, nominal: float, low: float, high: float) -> None:
     diagram = catalog().get(diagram_id)
+    second = diagram.elements[1]
     scan = [melting_curve(diagram, wt) for wt in np.linspace(low, high, 301)]
-    for over, question in (
-        (solidus_over, lambda c: c.solidus_c),
-        (liquidus_over, lambda c: c.liquidus_c),
+    melter = tolerant(diagram_id, nominal, low, high)
+    for found, question in (
+        (melter.kept(0.0), lambda c: c.solidus_c),
+        (melter.needed(1.0), lambda c: c.liquidus_c),
     ):
-        found = over(diagram, nominal, low, high)
         values = [question(c) for c in scan]
         assert found.lowest <= min(values) + 1e-9
         assert found.highest >= max(values) - 1e-9
         # and each is really met by some composition of the interval
-        for wt, value in ((found.lowest_at_wt, found.lowest), (found.highest_at_wt, found.highest)):
-            assert low <= wt <= high
-            assert question(melting_curve(diagram, wt)) == pytest.approx(value, abs=1e-9)
+        for at, value in ((found.lowest_at, found.lowest), (found.highest_at, found.highest)):
+            assert low <= at[second] <= high
+            assert question(melting_curve(diagram, at[second])) == pytest.approx(value, abs=1e-9)
 
 
 @pytest.mark.parametrize(("diagram_id", "nominal", "low", "high"), INTERVALS)
@@ -105,18 +108,38 @@ def test_extremes_of_a_fraction(
 ) -> None:
     diagram = catalog().get(diagram_id)
     scan = [melting_curve(diagram, wt).stays_above(fraction) for wt in np.linspace(low, high, 301)]
-    found = extremes_over(diagram, nominal, low, high, fraction, lambda c: c.stays_above(fraction))
+    found = tolerant(diagram_id, nominal, low, high).needed(fraction)
     assert found.lowest <= min(scan) + 1e-9
     assert found.highest >= max(scan) - 1e-9
 
 
+@pytest.mark.parametrize("diagram_id", ["ag-pb", "ag-zn", "au-sn", "bi-in", "cu-pb", "cu-zn", "in-sn"])
+@pytest.mark.parametrize("fraction", [0.0, 0.35, 1.0])
+def test_wide_tolerances_need_few_compositions_and_miss_none(diagram_id: str, fraction: float) -> None:
+    """Against vertices of the stored polygons and other compositions at random."""
+    diagram = catalog().get(diagram_id)
+    low, high = diagram.composition_range_wt
+    melter = tolerant(diagram_id, 0.5 * (low + high), low, high)
+    vertices = np.concatenate([np.array(r.polygon.exterior.coords)[:, 0] for r in diagram.regions])
+    rng = np.random.default_rng(8)
+    scan = np.concatenate([rng.choice(np.unique(vertices), 300), rng.uniform(low, high, 150)])
+    curves = [melting_curve(diagram, wt) for wt in np.unique(scan).tolist()]
+    for ask, possible in (("kept", fraction < 1.0), ("needed", fraction > 0.0)):
+        if possible:
+            found = getattr(melter, ask)(fraction)
+            question = {"kept": "first_exceeds", "needed": "stays_above"}[ask]
+            values = [getattr(curve, question)(fraction) for curve in curves]
+            assert found.lowest <= min(values) + 1e-9
+            assert found.highest >= max(values) - 1e-9
+            assert found.tried <= 120
+
+
 def test_an_extreme_inside_the_interval_is_found() -> None:
     """Across the eutectic both ends have a higher liquidus than the middle."""
-    diagram = catalog().get("pb-sn")
-    found = liquidus_over(diagram, 62.0, 60.0, 64.0)
-    eutectic = next(i for i in diagram.invariants if i.kind == "eutectic")
+    found = tolerant("pb-sn", 62.0, 60.0, 64.0).needed(1.0)
+    eutectic = next(i for i in catalog().get("pb-sn").invariants if i.kind == "eutectic")
     assert found.lowest == pytest.approx(eutectic.temperature_c, abs=1e-6)
-    assert found.lowest_at_wt == pytest.approx(eutectic.compositions_wt["L"], abs=1e-5)
+    assert found.lowest_at["Sn"] == pytest.approx(eutectic.compositions_wt["L"], abs=1e-5)
 
 
 def test_place_meets_the_limits_of_both_elements() -> None:
@@ -128,6 +151,14 @@ def test_place_meets_the_limits_of_both_elements() -> None:
     assert where.second_wt in (0.0, 100.0)
     with pytest.raises(NotCovered):
         place(catalog(), alloy_from_wt({"Sn": 50, "Ag": 25, "Cu": 25}))
+
+
+def test_limits_of_a_third_element_alone_leave_the_alloy_as_it_is() -> None:
+    brass = replace(alloy_from_wt({"Cu": 60, "Zn": 40}), limits_wt={"Sn": (0.25, 1.0)})
+    where = place(catalog(), brass)
+    assert (where.second_wt, where.low_wt, where.high_wt) == (40.0, 40.0, 40.0)
+    with_zinc = replace(brass, limits_wt={"Sn": (0.25, 1.0), "Zn": (39.0, 42.0)})
+    assert place(catalog(), with_zinc).low_wt == 39.0
 
 
 def test_impossible_questions_are_refused() -> None:
@@ -147,6 +178,6 @@ def test_impossible_questions_are_refused() -> None:
     with pytest.raises(OutsideData):
         melting_curve(diagram, 101.0)
     with pytest.raises(OutsideData, match="data"):
-        liquidus_over(catalog().get("cu-sn"), 61.0, 59.0, 62.0)
+        tolerant("cu-sn", 61.0, 59.0, 62.0).needed(1.0)
     with pytest.raises(InvalidComposition):
         alloy_from_wt({"Sn": 50, "Pb": 40})

@@ -11,8 +11,8 @@ from diagrams.alloys import alloy_from_designation, alloy_from_wt
 from diagrams.errors import InvalidComposition, InvalidInput, OutsideData
 from diagrams.files.catalog import catalog
 from diagrams.questions.melting import melting_curve
-from diagrams.questions.melting_range import liquidus_over, solidus_over
 from diagrams.questions.tolerance_box import Box, box_of, span_over
+from tests.diagrams.tolerant import tolerant
 
 
 def as_rows(box: Box, elements: str) -> list[tuple[float, ...]]:
@@ -114,8 +114,8 @@ def test_extremes_of_binaries_are_the_exact_ones(diagram_id: str, wt: float, tol
     diagram = catalog().get(diagram_id)
     first, second = diagram.elements
     box = box_of(alloy_from_wt({first: 100 - wt, second: wt}, {second: tolerance}))
-    for exact, name in ((solidus_over, "solidus_c"), (liquidus_over, "liquidus_c")):
-        known = exact(diagram, wt, wt - tolerance, wt + tolerance)
+    exact = tolerant(diagram_id, wt, wt - tolerance, wt + tolerance)
+    for known, name in ((exact.kept(0.0), "solidus_c"), (exact.needed(1.0), "liquidus_c")):
         span = span_over(box, lambda c, name=name: getattr(melting_curve(diagram, c.get(second, 0.0)), name))
         assert span.lowest is not None
         assert span.highest is not None
