@@ -1,0 +1,105 @@
+"""Recordings as text tables: time in the first column, one sensor a column, names in the first line.
+
+Columns are parted by semicolon, tab or comma; with the first two, numbers may have a decimal comma. RFC 4180
+quotes are understood. Lines that begin with # are comments.
+"""
+
+import csv
+import io
+import re
+from collections.abc import Sequence
+
+import numpy as np
+
+from diagrams.errors import InvalidInput
+from service.process.profiles.recording import Channel
+from service.process.profiles.trace import Floats
+
+MOST_SENSORS, MOST_SAMPLES = 64, 200_000
+SEPARATORS = (";", "\t", ",")
+PLAIN = re.compile(r"[0-9eE+\-.,; \t\n]*")
+NUMBER = re.compile(r"[+-]?(\d+([.,]\d*)?|[.,]\d+)([eE][+-]?\d+)?")
+
+
+def channels_from(text: str) -> tuple[Channel, ...]:
+    """The columns of a table; empty cells are missing samples. Raises InvalidInput naming line and column."""
+    text = text.removeprefix("\ufeff")
+    lines = [line for line in text.splitlines() if line.strip() and not line.startswith("#")]
+    if len(lines) < 2:
+        raise _wrong("The table holds no samples.", "Send a line of names and at least two lines of numbers.")
+    separator = next((s for s in SEPARATORS if s in lines[0]), None)
+    if separator is None:
+        raise _wrong(
+            "The first line has a single column.",
+            "Part the columns by semicolon, tab or comma: time first, then one column a sensor.",
+        )
+    names = [name.strip() for name in _rows(lines[:1], separator)[0]]
+    if len(names) - 1 > MOST_SENSORS or len(lines) - 1 > MOST_SAMPLES:
+        raise _wrong(
+            f"The table has {len(names) - 1} sensors and {len(lines) - 1} samples.",
+            f"Send at most {MOST_SENSORS} sensors and {MOST_SAMPLES} samples at a time.",
+        )
+    values = _quick(lines[1:], len(names), separator)
+    if values is None:
+        values = _numbers(_rows(lines[1:], separator), len(names), separator)
+    times = values[:, 0]
+    if not np.isfinite(times).all():
+        line = int(np.argmin(np.isfinite(times))) + 2
+        raise _wrong(f"Line {line} has no time.", "Give every line a time in seconds, in the first column.")
+    return tuple(
+        Channel(name, times, values[:, k + 1], f"table.column {k + 2}") for k, name in enumerate(names[1:])
+    )
+
+
+def _quick(lines: Sequence[str], width: int, separator: str) -> Floats | None:
+    """Complete tables of plain numbers in one go; None for any other, which is read cell by cell."""
+    text = "\n".join(lines)
+    if not PLAIN.fullmatch(text):
+        return None
+    if separator != "," and "," in text:
+        if "." in text:
+            return None
+        text = text.replace(",", ".")
+    try:
+        values = np.loadtxt(io.StringIO(text), delimiter=separator, ndmin=2)
+    except ValueError:
+        return None  # reading it cell by cell tells where it fails
+    return values if values.shape == (len(lines), width) and np.isfinite(values).all() else None
+
+
+def _rows(lines: Sequence[str], separator: str) -> list[list[str]]:
+    if not any('"' in line for line in lines):  # the usual case, several times faster
+        return [line.split(separator) for line in lines]
+    try:
+        return list(csv.reader(io.StringIO("\n".join(lines)), delimiter=separator, strict=True))
+    except csv.Error as error:
+        raise _wrong(f"The table cannot be read: {error}.", "Check the quotes (RFC 4180).") from error
+
+
+def _numbers(rows: Sequence[Sequence[str]], width: int, separator: str) -> Floats:
+    for k, row in enumerate(rows):
+        if len(row) != width:
+            hint = " A decimal comma needs columns parted by semicolon or tab." if separator == "," else ""
+            raise _wrong(
+                f"Line {k + 2} has {len(row)} columns, the first line {width}.",
+                f"Give every line as many columns as there are names; empty cells may be empty.{hint}",
+            )
+    cells = [cell.strip() for row in rows for cell in row]
+    points, commas = any("." in c for c in cells), any("," in c for c in cells)
+    if points and commas:
+        raise _wrong(
+            "Some numbers have a point and some a comma.",
+            "Use one decimal mark throughout and no mark for thousands.",
+        )
+    for k, cell in enumerate(cells):
+        if cell and not NUMBER.fullmatch(cell):
+            raise _wrong(
+                f"Line {k // width + 2}, column {k % width + 1}: “{cell[:40]}” is no number.",
+                "Send plain numbers; leave the cell of a missing sample empty.",
+            )
+    plain = [cell.replace(",", ".") if cell else "nan" for cell in cells]
+    return np.array(plain).astype(np.float64).reshape(len(rows), width)
+
+
+def _wrong(what: str, remedy: str) -> InvalidInput:
+    return InvalidInput(what, field="table", remedy=remedy)
