@@ -4,8 +4,8 @@ from collections.abc import Sequence
 from dataclasses import dataclass
 from typing import Literal
 
+from service.process.bounds import Bounds
 from service.process.profiles.limits import (
-    Bounds,
     Checked,
     Levels,
     Limits,

@@ -7,6 +7,7 @@ from collections.abc import Iterator
 from dataclasses import dataclass
 from typing import Literal
 
+from service.process.bounds import Bounds
 from service.process.profiles.trace import (
     Trace,
     first_at,
@@ -20,14 +21,6 @@ from service.process.profiles.trace import (
 Side = Literal["at least", "at most"]
 ONE_SIDED_C = 25.0  # a temperature bounded on one side only: 0 °C is no natural zero to take shares of
 ROUNDING = 1e-9  # relative: a margin this small comes from the arithmetic, not from the run
-
-
-@dataclass(frozen=True)
-class Bounds:
-    """At least `low`, at most `high`; None sets no bound."""
-
-    low: float | None = None
-    high: float | None = None
 
 
 @dataclass(frozen=True)

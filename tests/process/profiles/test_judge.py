@@ -5,9 +5,9 @@ from itertools import permutations
 import numpy as np
 import pytest
 
+from service.process.bounds import Bounds
 from service.process.profiles.judge import Sensor, hold_still, judge
 from service.process.profiles.limits import (
-    Bounds,
     Checked,
     Levels,
     Limits,
