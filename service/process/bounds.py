@@ -9,3 +9,7 @@ class Bounds:
 
     low: float | None = None
     high: float | None = None
+
+
+FREE = Bounds()
+"""No bound at all."""

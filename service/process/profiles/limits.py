@@ -7,7 +7,7 @@ from collections.abc import Iterator
 from dataclasses import dataclass
 from typing import Literal
 
-from service.process.bounds import Bounds
+from service.process.bounds import FREE, Bounds
 from service.process.profiles.trace import (
     Trace,
     first_at,
@@ -54,11 +54,11 @@ class Limits:
     """Demands on a run; rates are positive, in °C/s, taken over `averaging_s` seconds."""
 
     averaging_s: float = 5.0
-    rise_c_per_s: Bounds = Bounds()
-    fall_c_per_s: Bounds = Bounds()
-    freezing_c_per_s: Bounds = Bounds()
-    above_solidus_s: Bounds = Bounds()
-    at_target_s: Bounds = Bounds()
+    rise_c_per_s: Bounds = FREE
+    fall_c_per_s: Bounds = FREE
+    freezing_c_per_s: Bounds = FREE
+    above_solidus_s: Bounds = FREE
+    at_target_s: Bounds = FREE
     soak: Soak | None = None
     near_peak: NearPeak | None = None
     to_peak: ToPeak | None = None
@@ -146,7 +146,7 @@ def joint_checks(trace: Trace, limits: Limits, levels: Levels, window: Bounds) -
 def any_checks(trace: Trace, limits: Limits) -> Iterator[Checked]:
     """The demands on any sensor, whether a joint or a part: rates and times."""
     top = peak(trace)
-    if limits.rise_c_per_s != Bounds() or limits.fall_c_per_s != Bounds():
+    if limits.rise_c_per_s != FREE or limits.fall_c_per_s != FREE:
         found = rates(trace, limits.averaging_s)
         short = f"the record is shorter than the averaging time of {limits.averaging_s:g} s"
         rise, fall = (None, None) if found is None else (found.rise.value, found.fall.value)
@@ -176,7 +176,7 @@ def any_checks(trace: Trace, limits: Limits) -> Iterator[Checked]:
 
 
 def _freezing(trace: Trace, limits: Limits, levels: Levels) -> list[Checked]:
-    if limits.freezing_c_per_s == Bounds():
+    if limits.freezing_c_per_s == FREE:
         return []
     found = mean_fall(trace, levels.liquidus_c, levels.solidus_c, limits.averaging_s)
     why = "the record does not show the alloy melted and frozen again"
