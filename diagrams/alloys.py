@@ -19,6 +19,7 @@ from diagrams.units import at_to_wt
 TOTAL_TOLERANCE = 0.1  # percent by which a given composition may miss 100
 _ROUNDING = 1e-12  # percent: sums of a few decimal fractions miss 100 by less
 _LONGEST_TEXT = 200
+_LONGEST_KEY = 40
 # Element symbol in its usual spelling, then mass percent; spaces only between complete pairs, because in
 # “Sn-3Ag” and “Sn 3Ag” the number belongs to the element after it.
 _PART = re.compile(r"([A-Z][a-z]?)([0-9]{1,3}(?:\.[0-9]{1,6})?)?")
@@ -164,10 +165,12 @@ def _checked(composition: Mapping[str, float], field: str) -> dict[str, float]:
         )
     checked: dict[str, float] = {}
     for name, value in composition.items():
-        el = symbol(shown(name), field)
+        el = symbol(shown(name), _place_of(name, field))
         if el in checked:
-            raise InvalidComposition(f"{el} is named twice.", field=field, remedy="Name each element once.")
-        checked[el] = _number(value, f"{field}.{el}", highest=100.0, slack=TOTAL_TOLERANCE)
+            raise InvalidComposition(
+                f"{el} is named twice.", field=_place_of(name, field), remedy="Name each element once."
+            )
+        checked[el] = _number(value, _place_of(name, field), highest=100.0, slack=TOTAL_TOLERANCE)
     total = math.fsum(checked.values())
     if not abs(total - 100.0) <= TOTAL_TOLERANCE + 1e-9:
         raise InvalidComposition(
@@ -176,6 +179,11 @@ def _checked(composition: Mapping[str, float], field: str) -> dict[str, float]:
             remedy=f"Percents must sum to 100 ± {TOTAL_TOLERANCE:g}.",
         )
     return checked
+
+
+def _place_of(name: str, field: str) -> str:
+    """The dotted path of an entry, as the asker spelled it; of the whole where a path cannot hold it."""
+    return f"{field}.{name}" if 0 < len(name) <= _LONGEST_KEY and "." not in name else field
 
 
 def _number(value: object, field: str, *, highest: float, slack: float = 0.0) -> float:
@@ -213,14 +221,15 @@ def _limits(
     """Lowest and highest mass percent: nominal ± tolerance, cut at the physical ends 0 and 100."""
     limits: dict[str, tuple[float, float]] = {}
     for name, value in tolerance_wt.items():
-        el = symbol(shown(name), "tolerance_wt")
+        place = _place_of(name, "tolerance_wt")
+        el = symbol(shown(name), place)
         if el not in composition or el in limits:
             raise InvalidComposition(
                 f"tolerance_wt names {el}, "
                 + ("twice." if el in limits else "which the alloy does not hold."),
-                field="tolerance_wt",
+                field=place,
                 remedy="Name elements of the alloy, each once: " + ", ".join(composition) + ".",
             )
-        tolerance = _number(value, f"tolerance_wt.{el}", highest=100.0)
+        tolerance = _number(value, place, highest=100.0)
         limits[el] = (max(0.0, composition[el] - tolerance), min(100.0, composition[el] + tolerance))
     return MappingProxyType({el: limits[el] for el in sorted(limits)})

@@ -19,11 +19,18 @@ MOLAR_MASS: Mapping[str, float] = MappingProxyType(
 
 def symbol(text: str, field: str = "composition_wt") -> str:
     """Return the element symbol in its usual spelling; raise InvalidComposition if unknown."""
-    tidy = text.strip().capitalize()
+    tidy = text.capitalize()
     if tidy not in MOLAR_MASS:
         raise InvalidComposition(
-            f"“{text}” is no element known here.",
+            f"“{text}” is no element known here{_likely_slip(text)}.",
             field=field,
             remedy="Use element symbols such as " + ", ".join(sorted(MOLAR_MASS)) + ".",
         )
     return tidy
+
+
+def _likely_slip(text: str) -> str:
+    """What is most often wrong with a text that is nearly a symbol."""
+    if text.strip().capitalize() in MOLAR_MASS:
+        return ": there is a space in it"
+    return ": write the symbol, not the name" if len(text) > 2 and text.isalpha() else ""

@@ -5,14 +5,16 @@ import logging.config
 import os
 import sys
 from collections.abc import Sequence
+from http import HTTPStatus
 
 import uvicorn
 from uvicorn.protocols.http.httptools_impl import HttpToolsProtocol
 
 from service.app import create_app
-from service.problems import problem_response
+from service.problems import KINDS, problem_response
 from service.settings import Settings, SettingsError, settings_from
 
+LONGEST_ADDRESS = 65_535  # bytes; the parser takes no more
 LOGGING = {
     "version": 1,
     "disable_existing_loggers": False,
@@ -29,11 +31,42 @@ class Protocol(HttpToolsProtocol):
 
     def send_400_response(self, msg: str) -> None:
         """Answer bytes that could not be parsed, and close."""
-        response = problem_response({}, "bad-request", "What came in is no HTTP request.")
-        headers = [*response.raw_headers, (b"link", b'</v1/safety>; rel="help"'), (b"connection", b"close")]
-        lines = b"".join(b"%s: %s\r\n" % header for header in headers)
-        self.transport.write(b"HTTP/1.1 400 Bad Request\r\n" + lines + b"\r\n" + bytes(response.body))
-        self.transport.close()
+        cycle = self.cycle
+        if cycle is None or cycle.response_complete or not cycle.response_started:
+            self.transport.write(refusal_of(getattr(self, "url", b"")))
+        self.transport.close()  # in the middle of an answer, cutting it off is the only honest end
+
+
+def refusal_of(address: bytes) -> bytes:
+    """The whole answer to a request that could not be parsed, of which this much of an address came in."""
+    code, detail = _complaint(address)
+    request_id = os.urandom(8).hex()
+    response = problem_response({"meltband.request_id": request_id}, code, detail)
+    status = HTTPStatus(KINDS[code].status)
+    headers = [
+        *response.raw_headers,
+        (b"x-request-id", request_id.encode()),
+        (b"link", b'</v1/safety>; rel="help"'),
+        (b"cache-control", b"no-store"),
+        (b"connection", b"close"),
+    ]
+    lines = b"".join(b"%s: %s\r\n" % header for header in headers)
+    return b"HTTP/1.1 %d %s\r\n%s\r\n%s" % (status, status.phrase.encode(), lines, bytes(response.body))
+
+
+def _complaint(address: bytes) -> tuple[str, str]:
+    if len(address) > LONGEST_ADDRESS:
+        return "address-too-long", f"The address is longer than {LONGEST_ADDRESS} bytes. Ask by POST."
+    if not address.isascii():
+        return (
+            "bad-request",
+            "The address holds bytes that are not escaped: write µ as %C2%B5, a space as %20.",
+        )
+    return (
+        "bad-request",
+        "What came in cannot be read as HTTP/1.1: mind the method, spaces in the address (write %20), "
+        "header lines and lengths, and that this port speaks http, not https.",
+    )
 
 
 def main(arguments: Sequence[str] | None = None) -> int:

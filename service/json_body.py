@@ -1,9 +1,12 @@
 """Reads JSON bodies without losing anything: a key given twice is refused, not overwritten."""
 
 import json
+from collections.abc import Iterator
 from typing import Any
 
 Path = tuple[str | int, ...]
+MOST_KEYS = 100  # of one object; no question has as many, and each one too many would be an error to tell
+MOST_OBJECTS = 10_000  # of one body, counted by their opening brackets; no question has as many
 
 
 class UnreadableJson(ValueError):
@@ -15,26 +18,57 @@ class UnreadableJson(ValueError):
         self.place = place
 
 
-class DuplicateKey(ValueError):
-    """An object in the body has the same key twice; `path` leads to it."""
+class UnusableObject(ValueError):
+    """An object in the body that no question can hold; `path` leads to it, `remedy` says what to do."""
+
+    def __init__(self, path: Path, wrong: str, remedy: str) -> None:
+        super().__init__(wrong)
+        self.path = path
+        self.remedy = remedy
+
+
+class DuplicateKey(UnusableObject):
+    """An object in the body has the same key twice; `path` leads to the key."""
 
     def __init__(self, path: Path) -> None:
-        super().__init__(f"“{path[-1]}” is given twice in the same object.")
-        self.path = path
+        super().__init__(path, f"“{path[-1]}” is given twice in the same object.", "Give each key once.")
+
+
+class TooManyObjects(UnusableObject):
+    """The body has more than MOST_OBJECTS objects."""
+
+    def __init__(self) -> None:
+        wrong = f"The body holds more than {MOST_OBJECTS} objects in curly brackets."
+        super().__init__((), wrong, "Ask in smaller parts.")
+
+
+class TooManyKeys(UnusableObject):
+    """An object in the body has more than MOST_KEYS keys."""
+
+    def __init__(self, path: Path) -> None:
+        super().__init__(
+            path,
+            f"An object holds more than {MOST_KEYS} keys.",
+            f"Leave out what is no field here: no object takes more than {MOST_KEYS}.",
+        )
 
 
 def read_json(body: bytes) -> Any:
-    """Parse UTF-8 JSON; raise UnreadableJson or DuplicateKey.
+    """Parse UTF-8 JSON; raise UnreadableJson, DuplicateKey, TooManyKeys or TooManyObjects.
 
     NaN, Infinity and numbers too large for a float come through as such: the models refuse them by field.
     """
+    if body.startswith(b"\xef\xbb\xbf"):
+        raise UnreadableJson("it begins with a byte order mark, which JSON does not have", (1, 1))
+    if len(body) > MOST_OBJECTS and body.count(b"{") > MOST_OBJECTS:
+        raise TooManyObjects
     try:
         read = _DECODER.decode(body.decode("utf-8"))
         if b"\\u" in body:  # only an escape can bring half a surrogate pair, which no answer could repeat
             json.dumps(read, ensure_ascii=False).encode("utf-8")
         return read
-    except _Twice:
-        raise DuplicateKey(_duplicate_path(body)) from None
+    except _Unusable:
+        raise _first_unusable(body) from None
     except json.JSONDecodeError as error:
         raise UnreadableJson(error.msg.rstrip(":"), (error.lineno, error.colno)) from None
     except UnicodeDecodeError as error:
@@ -49,36 +83,57 @@ def read_json(body: bytes) -> Any:
         raise UnreadableJson("a whole number with too many digits") from None
 
 
-class _Twice(Exception):
+class _Unusable(Exception):
     """Tells the fast pass to give way to the careful one."""
 
 
-def _unique(pairs: list[tuple[str, Any]]) -> dict[str, Any]:
+def _usable(pairs: list[tuple[str, Any]]) -> dict[str, Any]:
     made = dict(pairs)
-    if len(made) != len(pairs):
-        raise _Twice
+    if len(made) != len(pairs) or len(pairs) > MOST_KEYS:
+        raise _Unusable
     return made
 
 
-_DECODER = json.JSONDecoder(object_pairs_hook=_unique)
+_DECODER = json.JSONDecoder(object_pairs_hook=_usable)
 
 
 class _Pairs(list[tuple[str, Any]]):
     """An object kept as its pairs, so that it can be told from an array."""
 
 
-def _duplicate_path(body: bytes) -> Path:
-    """Find the first doubled key; a second, slower reading that only bad bodies pay for."""
-    waiting: list[tuple[Path, Any]] = [((), json.loads(body.decode("utf-8"), object_pairs_hook=_Pairs))]
-    while waiting:
-        path, value = waiting.pop(0)
-        if isinstance(value, _Pairs):
-            seen: set[str] = set()
-            for key, inner in value:
-                if key in seen:
-                    return (*path, key)
-                seen.add(key)
-                waiting.append(((*path, key), inner))
-        elif isinstance(value, list):
-            waiting.extend(((*path, index), inner) for index, inner in enumerate(value))
-    return ("",)
+def _first_unusable(body: bytes) -> UnreadableJson | UnusableObject:
+    """Find the first object at fault; a second reading, which only bad bodies pay for.
+
+    Each value is looked at once, in the order of the text, and a path is put together only when found.
+    """
+    try:
+        whole = json.loads(body.decode("utf-8"), object_pairs_hook=_Pairs)
+    except json.JSONDecodeError as error:  # broken further on, which no key repairs
+        return UnreadableJson(error.msg.rstrip(":"), (error.lineno, error.colno))
+    except (RecursionError, ValueError):
+        return UnreadableJson("brackets nested too deeply, or a whole number with too many digits")
+    keys: list[str | int] = []  # the path to the innermost open value, after one that stands for the whole
+    open_values: list[Iterator[tuple[str | int, Any]]] = [iter([("", whole)])]
+    while open_values:
+        for key, value in open_values[-1]:
+            if not isinstance(value, list):  # an object is kept as a list, too
+                continue
+            keys.append(key)
+            if isinstance(value, _Pairs) and (fault := _fault_of(value, keys)) is not None:
+                return fault
+            open_values.append(iter(value) if isinstance(value, _Pairs) else enumerate(value))
+            break
+        else:
+            open_values.pop()
+            if keys:
+                keys.pop()
+    raise AssertionError("the fast pass found a fault that the careful one does not")
+
+
+def _fault_of(pairs: _Pairs, keys: list[str | int]) -> UnusableObject | None:
+    seen: set[str] = set()
+    for key, _ in pairs:
+        if key in seen:
+            return DuplicateKey((*keys[1:], key))
+        seen.add(key)
+    return TooManyKeys(tuple(keys[1:])) if len(pairs) > MOST_KEYS else None

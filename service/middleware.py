@@ -8,8 +8,11 @@ import time
 from collections.abc import MutableMapping
 from typing import Any
 
+import anyio
+from starlette.requests import ClientDisconnect
 from starlette.types import ASGIApp, Message, Receive, Scope, Send
 
+from service.help_link import help_address
 from service.problems import Refusal, problem_response
 
 log = logging.getLogger("meltband")
@@ -17,6 +20,10 @@ access_log = logging.getLogger("meltband.access")
 
 _REQUEST_ID = re.compile(rb"[A-Za-z0-9._-]{1,64}")
 _QUIET_PATHS = frozenset({"/livez", "/readyz"})
+# Most clients read no answer before they have sent everything, and a connection closed on them meanwhile
+# looks like a failure of the network. So the rest of a body that is too large is thrown away first.
+MOST_DISCARDED_BYTES = 64 * 1024 * 1024
+LONGEST_DISCARDING_S = 10.0
 
 _ALWAYS = [
     (b"x-content-type-options", b"nosniff"),
@@ -59,11 +66,14 @@ class Edge:
             if asked.content_length is None:
                 receive = _counted(receive, self.max_body_bytes)
             elif asked.content_length > self.max_body_bytes:
+                await _discard(receive, 0 if asked.waits else asked.content_length)
                 raise _too_large(self.max_body_bytes)
             await self.app(scope, receive, answer.send)
         except Refusal as refusal:
             response = problem_response(scope, refusal.code, refusal.detail, headers=refusal.headers)
             await response(scope, receive, answer.send)
+        except ClientDisconnect:
+            log.info("request %s: the client went away while sending", asked.request_id)
         except Exception:
             log.exception("fault while answering request %s", asked.request_id)
             if answer.status:
@@ -78,12 +88,13 @@ class Edge:
 class _Asked:
     """The request headers this middleware needs, read in one pass."""
 
-    __slots__ = ("content_length", "head", "if_none_match", "request_id")
+    __slots__ = ("content_length", "head", "if_none_match", "request_id", "waits")
 
     def __init__(self, scope: Scope) -> None:
         self.head: bool = scope["method"] == "HEAD"
         self.content_length: int | None = None
         self.if_none_match = b""
+        self.waits = False
         given = b""
         for name, value in scope["headers"]:
             if name == b"x-request-id":
@@ -92,6 +103,8 @@ class _Asked:
                 self.if_none_match += (b"," if self.if_none_match else b"") + value
             elif name == b"content-length" and value.isdigit():
                 self.content_length = int(value)
+            elif name == b"expect":
+                self.waits = True  # sends its body only if told to go on, so there is nothing to discard
         self.request_id = given.decode() if _REQUEST_ID.fullmatch(given) else os.urandom(8).hex()
 
 
@@ -144,17 +157,17 @@ class _Answer:
 
 def _add_headers(scope: Scope, asked: _Asked, start: Message) -> None:
     headers: list[tuple[bytes, bytes]] = list(start.get("headers", ()))
-    kind, cached, linked = b"", False, False
+    kind, cached = b"", False
     for name, value in headers:
         if name == b"content-type":
             kind = value
         elif name == b"cache-control":
             cached = True
-        elif name == b"link":
-            linked = True
     headers.append((b"x-request-id", asked.request_id.encode()))
-    if not linked:  # a route that knows the alloy points to the notes on that alloy
-        headers.append((b"link", b'<%s/v1/safety>; rel="help"' % scope.get("root_path", "").encode()))
+    address = scope.get("root_path", "") + help_address(
+        scope["path"], scope["query_string"] if scope["method"] == "GET" else b"", start["status"] == 200
+    )
+    headers.append((b"link", b'<%s>; rel="help"' % address.encode()))
     if not cached:
         # stored answers are checked again before use; errors and answers to POST are not stored
         storable = start["status"] == 200 and scope["method"] == "GET"
@@ -175,7 +188,7 @@ def _matches(if_none_match: bytes, etag: bytes) -> bool:
 
 
 def _counted(receive: Receive, limit: int) -> Receive:
-    """Count a body that came without a length and stop reading where it grows too large."""
+    """Count a body that came without a length and stop where it grows larger than `limit` bytes."""
     total = 0
 
     async def counting() -> Message:
@@ -183,14 +196,29 @@ def _counted(receive: Receive, limit: int) -> Receive:
         message = await receive()
         total += len(message.get("body", b""))
         if total > limit:
+            if message.get("more_body", False):
+                await _discard(receive)
             raise _too_large(limit)
         return message
 
     return counting
 
 
+async def _discard(receive: Receive, length: int | None = None) -> None:
+    """Read and forget the body, of `length` bytes if that is known, unless it is too much even for that."""
+    if length == 0 or (length is not None and length > MOST_DISCARDED_BYTES):
+        return
+    total = 0
+    with anyio.move_on_after(LONGEST_DISCARDING_S):
+        while total <= MOST_DISCARDED_BYTES:
+            message = await receive()
+            total += len(message.get("body", b""))
+            if message["type"] != "http.request" or not message.get("more_body", False):
+                return
+
+
 def _too_large(limit: int) -> Refusal:
-    # the connection is closed because what is still coming goes unread
+    """The refusal; the connection is closed because what is still coming goes unread."""
     detail = f"The body is larger than {limit} bytes. Ask in smaller parts."
     return Refusal("body-too-large", detail, headers={"Connection": "close"})
 

@@ -71,7 +71,8 @@ def _describe_operation(operation: dict[str, Any]) -> None:
     responses["default"] = _response("Any other error, in the same form; `code` says which.")
     for response in responses.values():
         response.setdefault("headers", {})["Link"] = {
-            "description": 'Where the cautions are: `</v1/safety>; rel="help"`.',
+            "description": "Where the cautions are, with the alloy or diagram if a GET names a valid one: "
+            '`</v1/safety?alloy=Sn63Pb37>; rel="help"`.',
             "schema": {"type": "string"},
         }
 

@@ -57,6 +57,7 @@ KINDS: Mapping[str, Kind] = {
     "not-acceptable": Kind(406, "Form not offered", "The answer is not offered in the form asked for."),
     "conflict": Kind(409, "Conflict", "The request collides with what is stored."),
     "body-too-large": Kind(413, "Body too large", "The body is larger than this service takes."),
+    "address-too-long": Kind(414, "Address too long", "The address is longer than the server takes."),
     "unsupported-media-type": Kind(415, "Body of the wrong kind", "Send the body as application/json."),
     "invalid-request": Kind(422, "Request not valid", "Fields are missing, unknown or wrong; each is named."),
     "too-many-requests": Kind(429, "Too many requests", "Wait as long as Retry-After says."),
@@ -66,8 +67,9 @@ KINDS: Mapping[str, Kind] = {
 
 _CODE_OF_STATUS = {
     400: "bad-request", 401: "unauthorised", 403: "forbidden", 404: "not-found", 405: "method-not-allowed",
-    406: "not-acceptable", 409: "conflict", 413: "body-too-large", 415: "unsupported-media-type",
-    422: "invalid-request", 429: "too-many-requests", 500: "internal-error", 503: "not-ready",
+    406: "not-acceptable", 409: "conflict", 413: "body-too-large", 414: "address-too-long",
+    415: "unsupported-media-type", 422: "invalid-request", 429: "too-many-requests", 500: "internal-error",
+    503: "not-ready",
 }  # fmt: skip
 
 
@@ -124,6 +126,13 @@ def field_error(where: str, path: Sequence[str | int], detail: str, remedy: str)
     )
 
 
+def counted(first: str, count: int) -> str:
+    """Sum up so many errors by the first; says so if there are more than are listed."""
+    wrong = "One field is" if count == 1 else f"{count} fields are"
+    cut = f" Only the first {MOST_ERRORS} of {count} are listed." if count > MOST_ERRORS else ""
+    return f"{wrong} not right: {first}{cut}"
+
+
 def problem_response(
     scope: Mapping[str, Any],
     code: str,
@@ -172,10 +181,7 @@ async def _on_validation_error(request: Request, error: Exception) -> Response:
     assert isinstance(error, RequestValidationError)
     found = list(error.errors())
     errors = [_explain(item) for item in found[:MOST_ERRORS]]
-    count = "One field is" if len(found) == 1 else f"{len(found)} fields are"
-    detail = f"{count} not right: {errors[0].detail}" if errors else "The request is not right."
-    if len(found) > MOST_ERRORS:
-        detail += f" Only the first {MOST_ERRORS} of {len(found)} are listed."
+    detail = counted(errors[0].detail, len(found)) if errors else "The request is not right."
     return problem_response(request.scope, "invalid-request", detail, errors)
 
 
@@ -207,8 +213,21 @@ def _explain(item: Mapping[str, Any]) -> FieldError:
 
 
 def _elements_asked_about(scope: Mapping[str, Any]) -> frozenset[str]:
+    """What the request mentions; what was not read, or could not be, may speak of lead."""
     address = f"{scope.get('path', '')}?{scope.get('query_string', b'').decode('latin-1')}"
-    return elements_mentioned(address, scope.get("meltband.body", b""))
+    mentioned = elements_mentioned(address, scope.get("meltband.body", b""))
+    unread = "meltband.body" not in scope and _brings_body(scope)
+    return mentioned | {"Pb"} if unread else mentioned
+
+
+def _brings_body(scope: Mapping[str, Any]) -> bool:
+    """Whether a request announces a body; one that is no HTTP may have held anything."""
+    if "headers" not in scope:
+        return True
+    return any(
+        (name == b"content-length" and value.strip(b"0 ") != b"") or name == b"transfer-encoding"
+        for name, value in scope["headers"]
+    )
 
 
 def _printable(text: str) -> str:

@@ -98,9 +98,11 @@ def test_the_remainder_takes_what_the_printed_nominals_leave() -> None:
         ({"Sn": True, "Pb": 99}, "composition_wt.Sn", "number"),
         ({"Sn": "63", "Pb": 37}, "composition_wt.Sn", "number"),
         ({"Sn": 10**5000}, "composition_wt.Sn", "number"),
-        ({"Xx": 100}, "composition_wt", "Xx"),
+        ({"Xx": 100}, "composition_wt.Xx", "Xx"),
         ({"x" * 100_000: 100}, "composition_wt", "xxx"),
-        ({"Sn": 50, "sn": 50}, "composition_wt", "twice"),
+        ({"Sn": 50, "sn": 50}, "composition_wt.sn", "twice"),
+        ({" Sn": 100}, "composition_wt. Sn", "a space"),
+        ({"S.n": 100}, "composition_wt", "no element"),
         ({"Sn": 0, "Pb": 0}, "composition_wt", "0"),
     ],
 )
@@ -196,9 +198,9 @@ def test_a_tolerance_of_the_request_replaces_that_of_the_standard() -> None:
 @pytest.mark.parametrize(
     ("tolerance", "field"),
     [
-        ({"Ag": 0.5}, "tolerance_wt"),
-        ({"Xx": 0.5}, "tolerance_wt"),
-        ({"Sn": 0.5, "sn": 0.5}, "tolerance_wt"),
+        ({"Ag": 0.5}, "tolerance_wt.Ag"),
+        ({"Xx": 0.5}, "tolerance_wt.Xx"),
+        ({"Sn": 0.5, "sn": 0.5}, "tolerance_wt.sn"),
         ({"Sn": -0.5}, "tolerance_wt.Sn"),
         ({"Sn": math.nan}, "tolerance_wt.Sn"),
         ({"Sn": math.inf}, "tolerance_wt.Sn"),

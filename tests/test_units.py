@@ -75,7 +75,12 @@ def test_temperature_scales_meet_at_their_fixed_points() -> None:
 
 
 def test_symbols_are_known_or_refused() -> None:
-    assert symbol(" sn ") == "Sn"
+    assert symbol("sn") == "Sn"
+    for text in (" Sn", "Sn ", "S n", "", " "):
+        with pytest.raises(InvalidComposition):
+            symbol(text)
+    with pytest.raises(InvalidComposition, match="a space"):
+        symbol(" Sn")
     with pytest.raises(InvalidComposition) as refused:
         symbol("Xx", "composition_wt")
     assert refused.value.field == "composition_wt"

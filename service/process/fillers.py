@@ -1,6 +1,6 @@
 """Choosing among the standard fillers by what they hold, when they melt and who lists them."""
 
-from collections.abc import Mapping
+from collections.abc import Iterable, Mapping
 from functools import cache
 
 from diagrams.elements import symbol
@@ -40,8 +40,14 @@ def choose(wanted: FillersWanted) -> list[Filler]:
     return [f for f in fillers() if _holds(f, contains, without) and _meets(f, wanted)]
 
 
+def elements_told_of(chosen: Iterable[Filler], wanted: FillersWanted) -> frozenset[str]:
+    """The elements that the chosen fillers hold or may hold, and those asked for."""
+    held = {el for filler in chosen for el in (*filler.composition_wt, *filler.limits_wt)}
+    return frozenset(held) | _symbols(wanted.contains, "contains")
+
+
 def _symbols(text: str | None, field: str) -> frozenset[str]:
-    return frozenset(symbol(part[:40], field) for part in text.split(",")) if text else frozenset()
+    return frozenset(symbol(part[:40].strip(), field) for part in text.split(",")) if text else frozenset()
 
 
 def _holds(filler: Filler, contains: frozenset[str], without: frozenset[str]) -> bool:

@@ -25,8 +25,9 @@ DiagramId = Annotated[
 @router.get("/diagrams", summary="All stored diagrams")
 async def list_diagrams() -> DiagramsAnswer:
     """List the stored diagrams with their ranges, editions, sources and known weak spots."""
-    shown = [summary_shown(diagram) for diagram in catalog().diagrams.values()]
-    return DiagramsAnswer(diagrams=shown, safety=safety_for(frozenset()))
+    stored = catalog().diagrams.values()
+    elements = frozenset(element for diagram in stored for element in diagram.elements)
+    return DiagramsAnswer(diagrams=[summary_shown(d) for d in stored], safety=safety_for(elements))
 
 
 @router.get("/diagrams/{id}", summary="One diagram: fields, invariants, compounds")

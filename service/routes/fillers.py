@@ -7,7 +7,7 @@ from fastapi import Path, Query
 from diagrams.errors import UnknownAlloy
 from diagrams.fillers import FILLERS_EDITION, FILLERS_GUIDANCE, find_filler
 from service.problems import Refusal, field_error
-from service.process.fillers import choose, covered
+from service.process.fillers import choose, covered, elements_told_of
 from service.routes.strict import new_router
 from service.safety import safety_for
 from service.schemas.fillers import FillerAnswer, FillersAnswer, FillersWanted, filler_shown
@@ -31,14 +31,14 @@ async def list_fillers(wanted: Annotated[FillersWanted, Query()]) -> FillersAnsw
 
     The figures are for guidance, each with its source; the standard in force decides.
     """
-    shown = [filler_shown(filler, covered().get(filler.name)) for filler in choose(wanted)]
-    elements = frozenset(element for filler in shown for element in filler.composition_wt)
+    chosen = choose(wanted)
+    shown = [filler_shown(filler, covered().get(filler.name)) for filler in chosen]
     return FillersAnswer(
         count=len(shown),
         fillers=shown,
         edition=FILLERS_EDITION,
         guidance=FILLERS_GUIDANCE,
-        safety=safety_for(elements, wanted.class_),
+        safety=safety_for(elements_told_of(chosen, wanted), wanted.class_),
     )
 
 

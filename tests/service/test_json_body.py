@@ -2,7 +2,15 @@ import math
 
 import pytest
 
-from service.json_body import DuplicateKey, UnreadableJson, read_json
+from service.json_body import (
+    MOST_KEYS,
+    MOST_OBJECTS,
+    DuplicateKey,
+    TooManyKeys,
+    TooManyObjects,
+    UnreadableJson,
+    read_json,
+)
 
 
 def test_ordinary_json_is_read_as_it_is():
@@ -19,6 +27,8 @@ def test_ordinary_json_is_read_as_it_is():
         ('{"alloy": {"composition_wt": {"Sn": 60, "Pb": 40, "Sn": 3}}}', ("alloy", "composition_wt", "Sn")),
         ('{"parts": [{"x": 1}, {"x": 1, "x": 2}]}', ("parts", 1, "x")),
         ('[{"a": 1}, {"b": [{"": 1, "": 2}]}]', (1, "b", 0, "")),
+        ('{"a": [[], [{}], {"b": {}}], "c": {"d": {"e": [1, 2]}, "f": 1, "f": 2}}', ("c", "f")),
+        ('[{"outer": 1, "inner": {"x": 1, "x": 1}, "outer": 1}]', (0, "outer")),
     ],
 )
 def test_a_key_given_twice_is_refused_with_its_path(text, path):
@@ -37,7 +47,7 @@ def test_a_key_given_twice_is_refused_with_its_path(text, path):
         (b"[" + b"1" * 5000 + b"]", None, "too many digits"),
         (rb'{"\ud800": 1}', None, "surrogate"),
         (rb'["\\u0041", "\udc00\ud800"]', None, "surrogate"),
-        ("\ufeff{}".encode(), (1, 1), "Expecting value"),
+        ("\ufeff{}".encode(), (1, 1), "byte order mark"),
     ],
 )
 def test_what_is_no_json_is_refused_with_its_place(body, place, words):
@@ -45,6 +55,32 @@ def test_what_is_no_json_is_refused_with_its_place(body, place, words):
         read_json(body)
     assert caught.value.place == place
     assert ("at line" in str(caught.value)) is (place is not None)
+
+
+def test_a_doubled_key_is_found_in_a_large_deep_body_by_looking_at_each_value_once():
+    wide = b"[" * 400 + b"0" + b",0" * 2_000_000 + b"]" * 400
+    with pytest.raises(DuplicateKey) as caught:
+        read_json(b'{"wide": %s, "next": [%s{"a": 1, "a": 2}]}' % (wide, b"[]," * 500_000))
+    assert caught.value.path == ("next", 500_000, "a")
+
+
+@pytest.mark.parametrize(
+    "body", [b'{"a": 1, "a": 2', b'{"a": 1, "a": 2}}', b'[{"a": 1, "a": 2}, ' + b"[" * 200_000]
+)
+def test_what_is_broken_behind_a_doubled_key_is_refused_as_unreadable(body):
+    with pytest.raises(UnreadableJson):
+        read_json(body)
+
+
+def test_keys_and_objects_are_as_many_as_a_question_may_need_and_no_more():
+    keys = [f'"k{k}": 0' for k in range(MOST_KEYS + 1)]
+    assert len(read_json(f"{{{', '.join(keys[1:])}}}".encode())) == MOST_KEYS
+    with pytest.raises(TooManyKeys) as caught:
+        read_json(f'{{"x": [0, {{{", ".join(keys)}}}]}}'.encode())
+    assert caught.value.path == ("x", 1)
+    assert len(read_json(b"[" + b"{}," * (MOST_OBJECTS - 1) + b"{}]")) == MOST_OBJECTS
+    with pytest.raises(TooManyObjects):
+        read_json(b"[" + b"{}," * MOST_OBJECTS + b"{}]")
 
 
 def test_whole_surrogate_pairs_and_escaped_backslashes_are_fine():
