@@ -12,18 +12,19 @@ from diagrams.errors import InvalidInput
 from diagrams.questions.melter import Span
 from service.process.effort import check_effort
 from service.process.placed import Placed, about
+from service.process.window_parts import Part, Term
 from service.process.window_terms import (
     BRAZING_MAXIMUM,
     BRAZING_MINIMUM,
     TARGET,
     EarlierJoint,
-    Term,
     UpperLimit,
     limit_term,
     practice_terms,
     remelting_term,
     target_term,
 )
+from service.process.window_verdict import Collision, judge
 from service.process.window_warnings import Warned, warnings_of
 
 
@@ -37,16 +38,6 @@ class Demands:
     spread_c: float = 0.0
     upper_limits: tuple[UpperLimit, ...] = ()
     earlier_joints: tuple[EarlierJoint, ...] = ()
-
-
-@dataclass(frozen=True)
-class Collision:
-    """Two terms that leave no window; `by_c` degrees are missing between them, the spread included."""
-
-    lower: str
-    upper: str
-    by_c: float
-    text: str
 
 
 @dataclass(frozen=True)
@@ -68,12 +59,14 @@ class JointSeen:
 class Window:
     """The window; without any upper term it is open above: no maximum, no width, no set point, feasible.
 
-    `setpoint_c` is the middle of what is allowed, for the mean of the hottest and the coldest reading.
+    `width_parts` add up to the width. `setpoint_c` is the middle of what is allowed, for the mean of the
+    hottest and the coldest reading.
     """
 
     minimum_peak_c: float
     maximum_peak_c: float | None
     width_c: float | None
+    width_parts: tuple[Part, ...]
     feasible: bool
     setpoint_c: float | None
     lower_terms: tuple[Term, ...]
@@ -106,31 +99,29 @@ def find_window(filler: Placed, demands: Demands, where: str = "alloy") -> Windo
         with about(joint.subject, f"earlier_joints.{k}.alloy"):
             starts.append(joint.subject.melter.kept(0.0))
             upper += remelting_term(joint, tolerance_c)
-    highest = max(lower, key=lambda term: term.value_c)
-    lowest = min(upper, key=lambda term: term.value_c, default=None)
-    maximum_c = None if lowest is None else lowest.value_c
+    verdict = judge(lower, upper, demands.spread_c, demands.earlier_joints)
+    maximum_c = None if verdict.upper is None else verdict.upper.value_c
     seen = tuple(
         _seen(joint, start, maximum_c, tolerance_c)
         for joint, start in zip(demands.earlier_joints, starts, strict=True)
     )
-    width_c = None if maximum_c is None else maximum_c - highest.value_c - demands.spread_c
-    feasible = width_c is None or width_c >= 0.0
-    middle_c = None if maximum_c is None or not feasible else 0.5 * (highest.value_c + maximum_c)
     return Window(
-        minimum_peak_c=highest.value_c,
+        minimum_peak_c=verdict.lower.value_c,
         maximum_peak_c=maximum_c,
-        width_c=width_c,
-        feasible=feasible,
-        setpoint_c=middle_c,
+        width_c=verdict.width_c,
+        width_parts=verdict.width_parts,
+        feasible=verdict.feasible,
+        setpoint_c=verdict.setpoint_c,
         lower_terms=tuple(lower),
         upper_terms=tuple(upper),
-        binding_lower=highest.name,
-        binding_upper=None if lowest is None else lowest.name,
-        collision=None if feasible or lowest is None else _collision(highest, lowest, demands.spread_c),
+        binding_lower=verdict.lower.name,
+        binding_upper=None if verdict.upper is None else verdict.upper.name,
+        collision=verdict.collision,
         earlier_joints=seen,
         warnings=warnings_of(
             filler,
             demands.earlier_joints,
+            demands.upper_limits,
             upper,
             target_liquid_fraction=demands.target_liquid_fraction,
             sensor_tolerance_c=tolerance_c,
@@ -164,13 +155,3 @@ def _seen(joint: EarlierJoint, starts: Span, maximum_c: float | None, tolerance_
     melter = joint.subject.melter
     worst = melter.most_liquid_up_to(maximum_c + tolerance_c)
     return JointSeen(joint, starts, melter.liquid_up_to(maximum_c), worst)
-
-
-def _collision(lower: Term, upper: Term, spread_c: float) -> Collision:
-    by_c = lower.value_c + spread_c - upper.value_c
-    apart = f", and the hottest joint lies {spread_c:g} °C above the coldest" if spread_c else ""
-    text = (
-        f"“{lower.name}” asks the coldest joint to read {lower.value_c:.2f} °C at least, “{upper.name}” "
-        f"allows the hottest {upper.value_c:.2f} °C at most{apart}: {by_c:.2f} °C are missing."
-    )
-    return Collision(lower.name, upper.name, by_c, text)

@@ -1,14 +1,23 @@
 """A window between the wire and the rules."""
 
+from collections.abc import Iterable
+
+from diagrams.errors import InvalidInput
+from diagrams.fillers import shown
 from service.process.melting import span_of
 from service.process.placed import Placed, placed, placed_text
-from service.process.window import Collision, Demands, JointSeen, Window, find_window
+from service.process.upper_limits import upper_limit
+from service.process.window import Demands, JointSeen, Window, find_window
+from service.process.window_parts import Part, Term
 from service.process.window_terms import EarlierJoint, UpperLimit
+from service.process.window_verdict import Collision
 from service.safety import safety_for
 from service.schemas.window import (
     CollisionShown,
     JointShown,
+    LimitAsked,
     LiquidReached,
+    PartShown,
     TermShown,
     WarningShown,
     WindowAddress,
@@ -16,7 +25,7 @@ from service.schemas.window import (
     WindowQuestion,
 )
 
-THE_LIMIT = "limit"
+THE_LIMIT, THE_KNOWN_LIMIT = "limit", "known limit"
 
 
 def window_of(question: WindowQuestion) -> WindowAnswer:
@@ -27,7 +36,9 @@ def window_of(question: WindowQuestion) -> WindowAnswer:
         superheat_c=question.superheat_c,
         sensor_tolerance_c=question.sensor_tolerance_c,
         spread_c=question.spread_c,
-        upper_limits=tuple(UpperLimit(limit.name, limit.limit_c) for limit in question.upper_limits),
+        upper_limits=tuple(
+            _limit(limit, f"upper_limits.{k}") for k, limit in enumerate(question.upper_limits)
+        ),
         earlier_joints=tuple(
             EarlierJoint(
                 joint.name,
@@ -44,19 +55,25 @@ def window_of(question: WindowQuestion) -> WindowAnswer:
 def window_at(address: WindowAddress) -> WindowAnswer:
     """The window asked for in an address line."""
     filler = placed_text(address.alloy, address.leave_out_traces_below_wt)
-    limits = () if address.limit_c is None else (UpperLimit(THE_LIMIT, address.limit_c),)
+    limits = [] if address.limit_c is None else [UpperLimit(THE_LIMIT, address.limit_c)]
+    if address.known_limit is not None:
+        known = upper_limit(address.known_limit, "known_limit")
+        limits.append(UpperLimit(THE_KNOWN_LIMIT, known.limit_c, known=known))
     demands = Demands(
         target_liquid_fraction=address.target_liquid_fraction,
         superheat_c=address.superheat_c,
         sensor_tolerance_c=address.sensor_tolerance_c,
         spread_c=address.spread_c,
-        upper_limits=limits,
+        upper_limits=tuple(limits),
     )
     return _shown(filler, demands, find_window(filler, demands, ""))
 
 
 def _shown(filler: Placed, demands: Demands, found: Window) -> WindowAnswer:
-    elements = filler.elements.union(*(joint.subject.elements for joint in demands.earlier_joints))
+    elements = filler.elements.union(
+        *(joint.subject.elements for joint in demands.earlier_joints),
+        *(limit.known.elements for limit in demands.upper_limits if limit.known is not None),
+    )
     hottest_c = max(found.minimum_peak_c + demands.spread_c, found.maximum_peak_c or found.minimum_peak_c)
     return WindowAnswer(
         alloy=filler.shown,
@@ -65,8 +82,9 @@ def _shown(filler: Placed, demands: Demands, found: Window) -> WindowAnswer:
         width_c=found.width_c,
         feasible=found.feasible,
         setpoint_c=found.setpoint_c,
-        lower_terms=[TermShown(name=t.name, value_c=t.value_c, reason=t.reason) for t in found.lower_terms],
-        upper_terms=[TermShown(name=t.name, value_c=t.value_c, reason=t.reason) for t in found.upper_terms],
+        width_parts=_parts(found.width_parts),
+        lower_terms=_terms(found.lower_terms),
+        upper_terms=_terms(found.upper_terms),
         binding_lower=found.binding_lower,
         binding_upper=found.binding_upper,
         collision=None if found.collision is None else _collision(found.collision),
@@ -75,6 +93,30 @@ def _shown(filler: Placed, demands: Demands, found: Window) -> WindowAnswer:
         source=filler.source,
         safety=safety_for(elements, filler.process, hottest_c),
     )
+
+
+def _limit(asked: LimitAsked, where: str) -> UpperLimit:
+    """A limit given or looked up; InvalidInput unless it is exactly one of both."""
+    if (asked.limit_c is None) is (asked.known is None):
+        both = asked.known is not None
+        raise InvalidInput(
+            f"“{shown(asked.name)}” has {'both limit_c and known' if both else 'neither limit_c nor known'}.",
+            field=f"{where}.{'known' if both else 'limit_c'}",
+            remedy="Give exactly one: a temperature as limit_c, or a key of GET /v1/known-limits as known.",
+        )
+    if asked.known is None:
+        assert asked.limit_c is not None  # one of both, as checked above
+        return UpperLimit(asked.name, asked.limit_c, asked.margin_c)
+    known = upper_limit(asked.known, f"{where}.known")
+    return UpperLimit(asked.name, known.limit_c, asked.margin_c, known)
+
+
+def _terms(terms: Iterable[Term]) -> list[TermShown]:
+    return [TermShown(name=t.name, value_c=t.value_c, reason=t.reason, parts=_parts(t.parts)) for t in terms]
+
+
+def _parts(parts: Iterable[Part]) -> list[PartShown]:
+    return [PartShown(name=part.name, value_c=part.value_c, reason=part.reason) for part in parts]
 
 
 def _collision(found: Collision) -> CollisionShown:

@@ -4,6 +4,15 @@ from collections.abc import Mapping
 from dataclasses import dataclass
 
 from service.process.placed import Placed
+from service.process.upper_limits import UpperKnown
+from service.process.window_parts import (
+    Part,
+    Term,
+    lowered_by_sensor,
+    margin,
+    raised_by_sensor,
+    superheat,
+)
 
 TARGET = "target liquid fraction"
 BRAZING_MINIMUM = "brazing range minimum"
@@ -11,20 +20,13 @@ BRAZING_MAXIMUM = "brazing range maximum"
 
 
 @dataclass(frozen=True)
-class Term:
-    """One bound on a reading, °C."""
-
-    name: str
-    value_c: float
-    reason: str
-
-
-@dataclass(frozen=True)
 class UpperLimit:
-    """A temperature that a part, a board or a base metal must not exceed."""
+    """A temperature that a part, a board or a base metal must not exceed; `known` if it is a stored one."""
 
     name: str
     limit_c: float
+    margin_c: float = 0.0
+    known: UpperKnown | None = None
 
 
 @dataclass(frozen=True, eq=False)
@@ -40,23 +42,22 @@ class EarlierJoint:
 def target_term(filler: Placed, fraction: float, superheat_c: float, tolerance_c: float) -> Term:
     """Hot enough for the liquid fraction even at the least favourable composition in tolerance."""
     found = filler.melter.needed(fraction)
-    value_c = found.safe_high + superheat_c + tolerance_c
     reason = (
         f"{label(filler)} is {_reached(fraction)} liquid from {found.nominal:.2f} °C on{_bound(filler)}; "
-        f"{_at_worst(filler, 'from', found.highest, found.highest_at)} ({_data(filler)}). "
-        f"Plus superheat {superheat_c:g} °C and sensor tolerance {tolerance_c:g} °C: {value_c:.2f} °C."
+        f"{_at_worst(filler, 'from', found.highest, found.highest_at)} ({_data(filler)})."
     )
-    return Term(TARGET, value_c, reason)
+    name = "liquidus" if fraction == 1.0 else "temperature of the target fraction"
+    start = Part(name, found.safe_high, reason)
+    return Term(TARGET, (start, superheat(superheat_c), raised_by_sensor(tolerance_c)))
 
 
 def limit_term(limit: UpperLimit, tolerance_c: float) -> Term:
     """A named limit, lowered by what the sensor may miss."""
-    value_c = limit.limit_c - tolerance_c
-    reason = (
-        f"{limit.name} may reach {limit.limit_c:g} °C. Minus sensor tolerance {tolerance_c:g} °C: "
-        f"{value_c:.2f} °C."
-    )
-    return Term(limit.name, value_c, reason)
+    reason = f"{limit.name} may reach {limit.limit_c:g} °C."
+    if limit.known is not None:
+        reason = f"{limit.name}: {limit.known.told}"
+    start = Part("limit", limit.limit_c, reason)
+    return Term(limit.name, (start, margin(limit.margin_c), lowered_by_sensor(tolerance_c)))
 
 
 def practice_terms(filler: Placed, tolerance_c: float) -> tuple[list[Term], list[Term]]:
@@ -70,25 +71,13 @@ def practice_terms(filler: Placed, tolerance_c: float) -> tuple[list[Term], list
     if row is None or row.brazing_range_c is None:
         return [], []
     low_c, high_c = row.brazing_range_c
-    said = (
+    reason = (
         f"The filler table gives {row.name} a brazing range of {low_c:g} to {high_c:g} °C ({row.source}; "
         f"{row.how}): guidance from practice, left out if the alloy is given by composition."
     )
-    least_c, most_c = low_c + tolerance_c, high_c - tolerance_c
-    return (
-        [
-            Term(
-                BRAZING_MINIMUM,
-                least_c,
-                f"{said} Plus sensor tolerance {tolerance_c:g} °C: {least_c:.2f} °C.",
-            )
-        ],
-        [
-            Term(
-                BRAZING_MAXIMUM, most_c, f"{said} Minus sensor tolerance {tolerance_c:g} °C: {most_c:.2f} °C."
-            )
-        ],
-    )
+    lower = Term(BRAZING_MINIMUM, (Part(BRAZING_MINIMUM, low_c, reason), raised_by_sensor(tolerance_c)))
+    upper = Term(BRAZING_MAXIMUM, (Part(BRAZING_MAXIMUM, high_c, reason), lowered_by_sensor(tolerance_c)))
+    return [lower], [upper]
 
 
 def remelting_term(joint: EarlierJoint, tolerance_c: float) -> list[Term]:
@@ -96,15 +85,15 @@ def remelting_term(joint: EarlierJoint, tolerance_c: float) -> list[Term]:
     if joint.max_liquid_fraction >= 1.0:
         return []
     found = joint.subject.melter.kept(joint.max_liquid_fraction)
-    value_c = found.safe_low - joint.margin_c - tolerance_c
     reason = (
         f"{joint.name} ({label(joint.subject)}) stays {_kept(joint.max_liquid_fraction)} up to "
         f"{found.nominal:.2f} °C{_bound(joint.subject)}; "
         f"{_at_worst(joint.subject, 'up to', found.lowest, found.lowest_at)} "
-        f"({_data(joint.subject)}). Minus margin {joint.margin_c:g} °C and sensor tolerance {tolerance_c:g} "
-        f"°C: {value_c:.2f} °C."
+        f"({_data(joint.subject)})."
     )
-    return [Term(joint.name, value_c, reason)]
+    name = "solidus" if joint.max_liquid_fraction == 0.0 else "temperature of the most liquid allowed"
+    start = Part(name, found.safe_low, reason)
+    return [Term(joint.name, (start, margin(joint.margin_c), lowered_by_sensor(tolerance_c)))]
 
 
 def label(subject: Placed) -> str:

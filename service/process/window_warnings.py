@@ -3,8 +3,11 @@
 from collections.abc import Iterable, Sequence
 from dataclasses import dataclass
 
+from service.process.known_limits import process_limit
 from service.process.placed import Placed
-from service.process.window_terms import EarlierJoint, Term, label
+from service.process.upper_limits import BASE_METAL
+from service.process.window_parts import Term
+from service.process.window_terms import EarlierJoint, UpperLimit, label
 
 _JUMP = 1e-6  # liquid fraction; less is no melting at once
 
@@ -20,6 +23,7 @@ class Warned:
 def warnings_of(
     filler: Placed,
     joints: Sequence[EarlierJoint],
+    limits: Sequence[UpperLimit],
     upper: Sequence[Term],
     *,
     target_liquid_fraction: float,
@@ -44,8 +48,10 @@ def warnings_of(
             found.append(Warned("limit-below-solidus", text))
     for joint in joints:
         found += _melting_at_once(joint, sensor_tolerance_c)
+    found += [Warned("base-metal-solidus", text) for text in _at_the_solidus(limits)]
     found += [Warned("printed-values", text) for text in _printed([filler, *(j.subject for j in joints)])]
     found += [Warned("from-memory", text) for text in _remembered([filler, *(j.subject for j in joints)])]
+    found += [Warned("from-memory", text) for text in _remembered_limits(limits)]
     return tuple(found)
 
 
@@ -62,6 +68,25 @@ def _melting_at_once(joint: EarlierJoint, tolerance_c: float) -> Iterable[Warned
             f"At {limit.safe_low:.2f} °C {100 * jump:.3g} % of {joint.name} melts at once, and neither "
             f"margin_c nor sensor_tolerance_c keeps a distance from it.",
         )
+
+
+def _at_the_solidus(limits: Iterable[UpperLimit]) -> Iterable[str]:
+    """Base metals heated right up to where they begin to melt; what a guide advises for aluminium."""
+    advised = process_limit("keep brazing temperature under base-metal solidus by", "aluminium base metals")
+    for limit in limits:
+        known = limit.known
+        if known is None or known.kind != BASE_METAL or limit.margin_c > 0.0:
+            continue
+        text = f"“{limit.name}” is bounded by where {known.subject} begins to melt, with no margin_c to it."
+        if known.subject.startswith("Al "):
+            text += f" {advised.limit:g} °C are advised ({advised.source.text}, {advised.source.how})."
+        yield text
+
+
+def _remembered_limits(limits: Iterable[UpperLimit]) -> Iterable[str]:
+    for limit in limits:
+        if limit.known is not None and limit.known.source.how == "from memory":
+            yield f"The limit of “{limit.name}” stands in the table from memory: guidance, no claim."
 
 
 def _printed(subjects: Iterable[Placed]) -> list[str]:

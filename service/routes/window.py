@@ -49,7 +49,10 @@ EXAMPLES = {
             "superheat_c": 20,
             "sensor_tolerance_c": 8,
             "spread_c": 25,
-            "upper_limits": [{"name": "Copper pipe, grain growth", "limit_c": 900}],
+            "upper_limits": [
+                {"name": "Copper pipe, grain growth", "limit_c": 900},
+                {"name": "Valve body", "known": "brass-c36000-free-cutting", "margin_c": 25},
+            ],
         },
     },
 }

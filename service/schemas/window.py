@@ -16,6 +16,7 @@ MOST_JOINTS = 30
 Name = Annotated[str, Field(min_length=1, max_length=100)]
 Difference = Annotated[float, Field(ge=0, le=1000)]
 Temperature = Annotated[float, Field(ge=-273.15, le=5000)]
+KnownKey = Annotated[str, Field(min_length=1, max_length=120)]
 Target = Annotated[float, Field(gt=0, le=1)]
 
 _TARGET = (
@@ -23,6 +24,10 @@ _TARGET = (
     "has to flow and fill, less for one that is wiped or pressed."
 )
 _SUPERHEAT = "How far above that temperature the coldest joint has to get, °C; 15 to 30 is usual in reflow."
+_KNOWN = (
+    "Key of a stored limit instead of a temperature of your own: the solidus of a base metal, the "
+    "classification temperature of a component, the upper end of a flux; `GET /v1/known-limits` lists all."
+)
 _SENSOR = "By how much a reading may differ from the true temperature, either way, °C."
 _SPREAD = "By how much the hottest joint lies above the coldest, °C."
 
@@ -33,7 +38,11 @@ class LimitAsked(StrictModel):
     name: Name = Field(
         description="Your name for it; no two may be alike.", examples=["Electrolytic capacitor"]
     )
-    limit_c: Temperature = Field(description="Highest true temperature allowed, °C.", examples=[245])
+    limit_c: Temperature | None = Field(
+        default=None, description="Highest true temperature allowed, °C; this or `known`.", examples=[245]
+    )
+    known: KnownKey | None = Field(default=None, description=_KNOWN, examples=["brass-c26000-70-30"])
+    margin_c: Difference = Field(default=0.0, description="How far below the limit to stay, °C.")
 
 
 class JointAsked(StrictModel):
@@ -93,6 +102,19 @@ class WindowAddress(BaseModel):
         description="One upper limit, °C, which the answer names `limit`. For more, and for earlier joints, "
         "POST.",
     )
+    known_limit: KnownKey | None = Field(
+        default=None,
+        description="Key of a stored upper limit (`GET /v1/known-limits`), which the answer names "
+        "`known limit`.",
+    )
+
+
+class PartShown(AnswerModel):
+    """One temperature that enters a sum."""
+
+    name: str
+    value_c: float = Field(description="What it adds, °C; negative where it takes off.")
+    reason: str
 
 
 class TermShown(AnswerModel):
@@ -103,6 +125,10 @@ class TermShown(AnswerModel):
     reason: str = Field(
         description="How it comes about: composition, data and edition, tolerance, additions."
     )
+    parts: list[PartShown] = Field(
+        description="The same as a sum: the temperature it starts from, then superheat, margin and sensor "
+        "tolerance, zero where none was asked for. Added up in this order they are `value_c` exactly."
+    )
 
 
 class CollisionShown(AnswerModel):
@@ -110,7 +136,10 @@ class CollisionShown(AnswerModel):
 
     lower: str = Field(description="Name of the lower term.")
     upper: str = Field(description="Name of the upper term.")
-    by_c: float = Field(description="Degrees missing between them, the spread included, °C.")
+    by_c: float = Field(
+        description="Degrees missing between them, the spread included, °C; 0 where they meet at a "
+        "temperature at which much of an earlier joint melts at once."
+    )
     text: str
 
 
@@ -146,7 +175,7 @@ class WarningShown(AnswerModel):
 
     code: str = Field(
         description="`partly-liquid`, `no-upper-limit`, `limit-below-solidus`, `melts-at-once`, "
-        "`printed-values` or `from-memory`."
+        "`base-metal-solidus`, `printed-values` or `from-memory`."
     )
     text: str
 
@@ -164,7 +193,14 @@ class WindowAnswer(Answer):
         description="Maximum minus minimum minus spread, °C: what is left for the process to wander. "
         "Negative if there is no window: so many degrees are missing. Null without a maximum."
     )
-    feasible: bool = Field(description="Whether coldest and hottest joint can be right at once.")
+    width_parts: list[PartShown] = Field(
+        description="The width as a sum: maximum peak, minimum peak, spread; they add up to `width_c`. Empty "
+        "without a maximum."
+    )
+    feasible: bool = Field(
+        description="Whether coldest and hottest joint can be right at once. A width of 0 is enough, unless "
+        "the maximum is where much of an earlier joint melts at once: it has to stay below."
+    )
     setpoint_c: float | None = Field(
         description="Aim the mean of the coldest and the hottest reading at this, °C: the middle between "
         "minimum and maximum, half the width away from either failure. Null if there is no window or no "

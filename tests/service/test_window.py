@@ -103,6 +103,35 @@ def test_the_address_line_gives_the_same_answer(ask):
     assert (again.status_code, again.content) == (304, b"")
 
 
+def test_limits_by_key_are_listed_and_bound_the_window(ask):
+    listed = ask("GET", "/v1/known-limits").json()
+    brass = next(limit for limit in listed["limits"] if limit["key"] == "brass-c36000-free-cutting")
+    assert (brass["kind"], brass["limit_c"], brass["reference"]["how"]) == ("base metal", 885, "from memory")
+    posted = ask_window(
+        ask,
+        {
+            "alloy": {"designation": "CuP 182"},
+            "target_liquid_fraction": 1,
+            "upper_limits": [{"name": "Body", "known": "BRASS C36000 free cutting", "margin_c": 10}],
+        },
+    )
+    body = next(term for term in posted["upper_terms"] if term["name"] == "Body")
+    assert body["value_c"] == 875
+    assert [part["value_c"] for part in body["parts"]] == [885, -10, 0]
+    assert {"lead", "zinc fume"} <= {note["topic"] for note in posted["safety"]["notes"]}
+    got = ask("GET", "/v1/window?alloy=CuP182&target_liquid_fraction=1&known_limit=brass-c36000-free-cutting")
+    assert got.json()["upper_terms"][0]["name"] == "known limit"
+    assert got.json()["upper_terms"][0]["value_c"] == 885
+
+
+def test_the_spread_is_a_part_of_the_width(ask):
+    found = ask_window(ask, QUESTION)
+    parts = {part["name"]: part["value_c"] for part in found["width_parts"]}
+    assert parts["spread"] == -6
+    assert sum(parts.values()) == pytest.approx(found["width_c"], abs=1e-9)
+    assert "6 °C more than the coldest" in found["width_parts"][-1]["reason"]
+
+
 def test_the_same_question_gives_the_same_bytes(ask):
     assert (
         ask("POST", "/v1/window", json=QUESTION).content == ask("POST", "/v1/window", json=QUESTION).content
@@ -132,6 +161,10 @@ def test_cautions_follow_all_alloys_named(ask):
         ({"upper_limits": [{"name": "a", "limit_c": 1}, {"name": "a", "limit_c": 2}]}, "upper_limits.1.name"),
         ({"upper_limits": [{"name": "a", "limit_c": True}]}, "upper_limits.0.limit_c"),
         ({"upper_limits": [{"name": "", "limit_c": 200}]}, "upper_limits.0.name"),
+        ({"upper_limits": [{"name": "a"}]}, "upper_limits.0.limit_c"),
+        ({"upper_limits": [{"name": "a", "limit_c": 250, "known": "al-6061"}]}, "upper_limits.0.known"),
+        ({"upper_limits": [{"name": "a", "known": "al-6016"}]}, "upper_limits.0.known"),
+        ({"upper_limits": [{"name": "a", "known": "al-6061", "margin_c": -1}]}, "upper_limits.0.margin_c"),
         ({"earlier_joints": [{"name": "a"}]}, "earlier_joints.0.alloy"),
         (
             {"earlier_joints": [{"name": "a", "alloy": {"composition_wt": {"Fe": 90, "C": 10}}}]},
@@ -175,6 +208,7 @@ def test_what_is_wrong_is_named(ask, change, field):
         ("alloy=Cu39Sn61&target_liquid_fraction=1&limit_c=nan", "limit_c"),
         ("alloy=Sn63Pb37&target_liquid_fraction=1&superheat_c=-3", "superheat_c"),
         ("alloy=Sn63Pb37&target_liquid_fraction=1&earlier_joints=x", "earlier_joints"),
+        ("alloy=Sn63Pb37&target_liquid_fraction=1&known_limit=al-6016", "known_limit"),
     ],
 )
 def test_what_is_wrong_in_the_address_is_named(ask, query, field):
