@@ -12,6 +12,7 @@ from diagrams.files.catalog import catalog
 from diagrams.fillers import Filler
 from diagrams.questions.melt import melter_for
 from diagrams.questions.melter import Melter
+from service.process.alloy_notes import check_tolerance, notes_on
 from service.safety import Process
 from service.schemas.alloy import AlloyAsked, AlloyUsed, Amounts, Form, alloy_of, alloy_shown
 from service.schemas.base import within
@@ -100,8 +101,10 @@ def _is_quick(form: Form, value: str | Amounts) -> bool:
 def _placed(
     form: Form, value: str | Amounts, tolerance: Amounts | None, leave_out_below_wt: float | None
 ) -> Placed:
+    alloy = alloy_of(form, value, tolerance)
+    check_tolerance(alloy, dict(tolerance or ()))
     tolerance_field = form if tolerance is None else "tolerance_wt"
-    return _place(alloy_of(form, value, tolerance), form, tolerance_field, leave_out_below_wt)
+    return _place(alloy, form, tolerance_field, leave_out_below_wt, tolerance or ())
 
 
 @lru_cache(maxsize=4096)
@@ -109,7 +112,13 @@ def _placed_text(text: str, leave_out_below_wt: float | None) -> Placed:
     return _place(parse_alloy(text), "alloy", "alloy", leave_out_below_wt)
 
 
-def _place(alloy: Alloy, field: str, tolerance_field: str, leave_out_below_wt: float | None = None) -> Placed:
+def _place(
+    alloy: Alloy,
+    field: str,
+    tolerance_field: str,
+    leave_out_below_wt: float | None = None,
+    tolerance: Amounts = (),
+) -> Placed:
     try:
         found = melter_for(catalog(), alloy, leave_out_below_wt)
     except DiagramsError as error:
@@ -124,7 +133,7 @@ def _place(alloy: Alloy, field: str, tolerance_field: str, leave_out_below_wt: f
         melter,
         _process(melter),
         frozenset(alloy.composition_wt),
-        alloy_shown(used, found.left_out_wt),
+        alloy_shown(used, found.left_out_wt, notes_on(alloy, melter, dict(tolerance))),
         source_of(melter),
         field,
         tolerance_field,

@@ -48,6 +48,7 @@ def warnings_of(
             found.append(Warned("limit-below-solidus", text))
     for joint in joints:
         found += _melting_at_once(joint, sensor_tolerance_c)
+    found += [Warned("alloy-note", text) for text in _noted([filler, *(j.subject for j in joints)])]
     found += [Warned("base-metal-solidus", text) for text in _at_the_solidus(limits)]
     found += [Warned("printed-values", text) for text in _printed([filler, *(j.subject for j in joints)])]
     found += [Warned("from-memory", text) for text in _remembered([filler, *(j.subject for j in joints)])]
@@ -87,6 +88,11 @@ def _remembered_limits(limits: Iterable[UpperLimit]) -> Iterable[str]:
     for limit in limits:
         if limit.known is not None and limit.known.source.how == "from memory":
             yield f"The limit of “{limit.name}” stands in the table from memory: guidance, no claim."
+
+
+def _noted(subjects: Iterable[Placed]) -> list[str]:
+    """What their answers say of the alloys, each once."""
+    return list(dict.fromkeys(f"{label(s)}: {note}" for s in subjects for note in s.shown.notes))
 
 
 def _printed(subjects: Iterable[Placed]) -> list[str]:

@@ -1,6 +1,6 @@
 """An alloy on the wire: how it is named in a question, and how an answer says which one it used."""
 
-from collections.abc import Mapping
+from collections.abc import Mapping, Sequence
 from typing import Annotated, Literal
 
 from pydantic import Field
@@ -111,6 +111,10 @@ class AlloyUsed(AnswerModel):
         description="Trace elements that the question allowed to leave out and no data cover, mass percent; "
         "`composition_wt` is the rest, taken as 100. Empty if none."
     )
+    notes: list[str] = Field(
+        description="Where this is not quite the alloy asked for: an element that its standard requires and "
+        "the printed nominal leaves out, a tolerance that was cut off or left aside. Empty if nothing."
+    )
 
 
 def limits_shown(limits_wt: Mapping[str, tuple[float, float]]) -> dict[str, Limits]:
@@ -118,7 +122,9 @@ def limits_shown(limits_wt: Mapping[str, tuple[float, float]]) -> dict[str, Limi
     return {el: Limits(lowest=low, highest=high) for el, (low, high) in limits_wt.items()}
 
 
-def alloy_shown(alloy: Alloy, left_out_wt: Mapping[str, float] | None = None) -> AlloyUsed:
+def alloy_shown(
+    alloy: Alloy, left_out_wt: Mapping[str, float] | None = None, notes: Sequence[str] = ()
+) -> AlloyUsed:
     """The alloy as an answer repeats it."""
     return AlloyUsed(
         composition_wt=dict(alloy.composition_wt),
@@ -126,4 +132,5 @@ def alloy_shown(alloy: Alloy, left_out_wt: Mapping[str, float] | None = None) ->
         given_total_wt=alloy.given_total_wt,
         limits_wt=limits_shown(alloy.limits_wt),
         left_out_wt=dict(left_out_wt or {}),
+        notes=list(notes),
     )

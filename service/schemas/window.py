@@ -175,7 +175,7 @@ class WarningShown(AnswerModel):
 
     code: str = Field(
         description="`partly-liquid`, `no-upper-limit`, `limit-below-solidus`, `melts-at-once`, "
-        "`base-metal-solidus`, `printed-values` or `from-memory`."
+        "`alloy-note`, `base-metal-solidus`, `printed-values` or `from-memory`."
     )
     text: str
 

@@ -88,6 +88,7 @@ def test_the_ways_of_naming_an_alloy_agree(ask):
         "given_total_wt": 100.0,
         "limits_wt": {},
         "left_out_wt": {},
+        "notes": [],
     }
 
 
