@@ -6,24 +6,19 @@ give `composition_wt`.
 """
 
 import math
-import re
 from collections.abc import Mapping
 from dataclasses import dataclass, field
 from types import MappingProxyType
 
+from diagrams.alloy_text import COMPOSITION, LONGEST_TEXT, PART, TOTAL_TOLERANCE, unknown_alloy
 from diagrams.elements import MOLAR_MASS, symbol
-from diagrams.errors import DiagramsError, InvalidComposition
-from diagrams.fillers import Filler, find_filler, match_filler, shown, unknown_designation
+from diagrams.errors import InvalidComposition
+from diagrams.fillers import Filler, match_filler, shown
 from diagrams.units import at_to_wt
 
-TOTAL_TOLERANCE = 0.1  # percent by which a given composition may miss 100
 _ROUNDING = 1e-12  # percent: sums of a few decimal fractions miss 100 by less
-_LONGEST_TEXT = 200
 _LONGEST_KEY = 40
-# Element symbol in its usual spelling, then mass percent; spaces only between complete pairs, because in
-# “Sn-3Ag” and “Sn 3Ag” the number belongs to the element after it.
-_PART = re.compile(r"([A-Z][a-z]?)([0-9]{1,3}(?:\.[0-9]{1,6})?)?")
-_COMPOSITION = re.compile(rf" *(?:{_PART.pattern} *(?![0-9.]))+")
+_NEARLY = 10.0  # percent by which a sum misses 100 if somebody meant 100
 
 
 @dataclass(frozen=True, slots=True)
@@ -64,7 +59,9 @@ def alloy_from_designation(
     mean it (BCuP-7: copper 88.2, not the printed 88); `given_total_wt` keeps the printed sum.
     Raises UnknownAlloy; InvalidComposition for a tolerance that makes no sense.
     """
-    filler = find_filler(text, field=field)
+    filler = match_filler(text)
+    if filler is None:
+        raise unknown_alloy(text, field, one_string=False)
     nominal = dict(filler.composition_wt)
     total = math.fsum(nominal.values())
     if filler.remainder is not None and abs(total - 100.0) > _ROUNDING:
@@ -110,12 +107,9 @@ def parse_alloy(text: str, tolerance_wt: Mapping[str, float] | None = None, *, f
     """
     if match_filler(text) is not None:
         return alloy_from_designation(text, tolerance_wt, field=field)
-    if len(text) > _LONGEST_TEXT or not _COMPOSITION.fullmatch(text):
-        raise _unreadable(text, field)
-    parts = [(found[1], found[2]) for found in _PART.finditer(text)]
-    for el, _ in parts:
-        if el not in MOLAR_MASS:
-            raise unknown_designation(text, field, f", and {el} is no element known here")
+    parts = [(found[1], found[2]) for found in PART.finditer(text)] if _is_composition(text) else []
+    if not parts or not all(el in MOLAR_MASS for el, _ in parts):
+        raise unknown_alloy(text, field, one_string=True)
     numbers = {el: float(value) for el, value in parts if value is not None}
     opened = [el for el, value in parts if value is None]
     if len(numbers) + len(opened) != len(parts) or set(opened) & set(numbers):
@@ -137,22 +131,31 @@ def parse_alloy(text: str, tolerance_wt: Mapping[str, float] | None = None, *, f
                 remedy="The numbers given must sum to less than 100.",
             )
         numbers[opened[0]] = balance
+    _check_total(numbers, text, field)
     return alloy_from_wt(numbers, tolerance_wt, field=field)
 
 
-def _unreadable(text: str, field: str) -> DiagramsError:
-    """The error that helps most with a text that is neither designation nor composition."""
-    if (
-        len(text) <= _LONGEST_TEXT
-        and re.search(r"[-\s]\s*[0-9]", text)
-        and re.search(r"[0-9][A-Z][a-z]?", text)
-    ):
-        return InvalidComposition(
-            f"“{shown(text)}” is ambiguous: a number may belong to the element before or after it.",
-            field=field,
-            remedy="Write each number right after its element, without hyphens: Ag3Cu0.5Sn.",
-        )
-    return unknown_designation(text, field)
+def _is_composition(text: str) -> bool:
+    return len(text) <= LONGEST_TEXT and COMPOSITION.fullmatch(text) is not None
+
+
+def _check_total(numbers: Mapping[str, float], text: str, field: str) -> None:
+    """Refuse a string whose numbers do not sum to 100, with the remedy that fits."""
+    total = math.fsum(numbers.values())
+    if abs(total - 100.0) <= TOTAL_TOLERANCE + 1e-9:
+        return
+    *others, last = numbers
+    rest = math.fsum(numbers[el] for el in others)
+    if others and abs(total - 100.0) <= _NEARLY and rest < 100.0:
+        written = "".join(f"{el}{numbers[el]:.10g}" for el in others) + last
+        remedy = f"Correct the numbers, or leave out the last one if {last} takes the balance: {written}."
+    elif total < 100.0:
+        remedy = "Add the element that takes the balance, without a number, such as Ag3Cu0.5Sn."
+    else:
+        remedy = "Correct the numbers, or leave one element without a number; it takes the balance."
+    raise InvalidComposition(
+        f"The percents of “{text.strip()}” sum to {total:.6g}, not 100.", field=field, remedy=remedy
+    )
 
 
 def _checked(composition: Mapping[str, float], field: str) -> dict[str, float]:

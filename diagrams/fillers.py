@@ -90,7 +90,13 @@ def find_filler(text: str, *, field: str = "designation") -> Filler:
     """
     filler = match_filler(text)
     if filler is None:
-        raise unknown_designation(text, field)
+        near = near_designations(text)
+        raise UnknownAlloy(
+            f"“{shown(text)}” is no designation in the filler table.",
+            field=field,
+            remedy="Use a designation of ISO 9453, J-STD-006, ISO 17672 or AWS A5.8."
+            + (f" Near: {', '.join(near)}." if near else ""),
+        )
     return filler
 
 
@@ -104,21 +110,12 @@ def shown(text: str) -> str:
     return text if len(text) <= _LONGEST_DESIGNATION else text[:_LONGEST_DESIGNATION] + "…"
 
 
-def unknown_designation(text: str, field: str, also: str = "") -> UnknownAlloy:
-    """The error for a text that is no designation, with the nearest ones as remedy."""
-    near: list[str] = []
-    if len(text) <= _LONGEST_DESIGNATION:
-        keys = difflib.get_close_matches(designation_key(text), sorted(_index()), n=5, cutoff=0.6)
-        near = list(dict.fromkeys(_index()[key].name for key in keys))
-    remedy = (
-        "Use a designation of the filler table (ISO 9453, J-STD-006, ISO 17672, AWS A5.8), "
-        "or a composition such as Ag3Cu0.5Sn."
-    )
-    return UnknownAlloy(
-        f"“{shown(text)}” is no designation in the filler table{also}.",
-        field=field,
-        remedy=f"{remedy} Near: {', '.join(near)}." if near else remedy,
-    )
+def near_designations(text: str) -> list[str]:
+    """Names of the fillers whose designations look most like a text, at most five."""
+    if len(text) > _LONGEST_DESIGNATION:
+        return []
+    keys = difflib.get_close_matches(designation_key(text), sorted(_index()), n=5, cutoff=0.6)
+    return list(dict.fromkeys(_index()[key].name for key in keys))
 
 
 @cache

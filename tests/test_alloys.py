@@ -142,9 +142,9 @@ def test_sums_beyond_a_tenth_are_refused(total: float) -> None:
     [
         ("", UnknownAlloy, "no designation"),
         ("SAC304", UnknownAlloy, "no designation"),
-        ("60Sn40Pb", UnknownAlloy, "no designation"),
-        ("ag3cu0.5sn", UnknownAlloy, "no designation"),
-        ("Sn63,Pb37", UnknownAlloy, "no designation"),
+        ("60Sn40Pb", UnknownAlloy, "numbers before the elements"),
+        ("ag3cu0.5sn", UnknownAlloy, "spell the symbols"),
+        ("Sn63,Pb37", UnknownAlloy, "holds “,”"),
         ("Sn6e1Pb40", UnknownAlloy, "no designation"),
         ("Sn٦٣Pb", UnknownAlloy, "no designation"),
         ("Sn-3.0Ag-0.5Cu", InvalidComposition, "ambiguous"),
@@ -157,8 +157,8 @@ def test_sums_beyond_a_tenth_are_refused(total: float) -> None:
         ("Sn50Pb60", InvalidComposition, "110"),
         ("Sn999Pb", InvalidComposition, "nothing for Pb"),
         ("Xx5Sn", UnknownAlloy, "Xx is no element"),
-        ("Ti50Ni", UnknownAlloy, "Ti is no element"),
-        ("Sn63Pb37" * 10_000, UnknownAlloy, "no designation"),
+        ("Ti50Ni", UnknownAlloy, "no data here hold Ti"),
+        ("Sn63Pb37" * 10_000, UnknownAlloy, "too long"),
     ],
 )
 def test_a_wrong_string_is_refused_with_a_reason(text: str, error: type[DiagramsError], told: str) -> None:

@@ -24,7 +24,18 @@ MOST_LINES = 300
 LAYERS = [
     {"elements", "units", "sources", "errors", "tolerances", "reference"},
     {"gibbs", "tie", "events", "equilibrium", "trace"},
-    {"diagram", "linework", "reactions", "close", "borders", "section", "fillers", "alloys", "density"},
+    {
+        "diagram",
+        "linework",
+        "reactions",
+        "close",
+        "borders",
+        "section",
+        "fillers",
+        "alloy_text",
+        "alloys",
+        "density",
+    },
     {
         "files",
         "many",
