@@ -55,7 +55,7 @@ def check_range(diagram: Diagram, second_wt: float, temperature_c: float) -> Non
             f"{temperature_c:g} °C lies outside the data of {diagram.id}, "
             f"which reach from {low:g} to {high:g} °C.",
             field="temperature_c",
-            remedy=f"Ask between {low:g} and {high:g} °C. {' '.join(diagram.notes)}".strip(),
+            remedy=f"Ask between {low:g} and {high:g} °C{_why(diagram)}.",
         )
 
 
@@ -68,8 +68,13 @@ def check_composition(diagram: Diagram, second_wt: float) -> None:
             f"{second_wt:g} wt% {second} lies outside the data of {diagram.id}, "
             f"which reach from {low:g} to {high:g} wt% {second}.",
             field="composition_wt",
-            remedy=f"Ask between {low:g} and {high:g} wt% {second}. {' '.join(diagram.notes)}".strip(),
+            remedy=f"Ask between {low:g} and {high:g} wt% {second}{_why(diagram)}.",
         )
+
+
+def _why(diagram: Diagram) -> str:
+    """Where to read why the data end; the notes speak of much else, too, and are too long for a remedy."""
+    return f"; the notes on the diagram {diagram.id} tell what its data hold" if diagram.notes else ""
 
 
 def locate(diagram: Diagram, second_wt: float, temperature_c: float) -> Reading:
