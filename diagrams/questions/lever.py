@@ -30,6 +30,17 @@ class Equilibrium:
     on_boundary: bool
     below: "Equilibrium | None" = None
 
+    @property
+    def coexisting(self) -> tuple[str, ...]:
+        """Phases that coexist at an invariant temperature, liquid first; empty anywhere else.
+
+        They are those just above and those just below: there, and only there, all of them can be present.
+        """
+        if self.below is None:
+            return ()
+        kinds = {phase.name: phase.kind for state in (self, self.below) for phase in state.phases}
+        return tuple(sorted(kinds, key=lambda name: (kinds[name] != "liquid", name)))
+
 
 def equilibrium(diagram: Diagram, second_wt: float, temperature_c: float) -> Equilibrium:
     """Phases, amounts and compositions at wt% of the second element and °C; OutsideData beyond the data."""

@@ -95,6 +95,14 @@ def locate(diagram: Diagram, second_wt: float, temperature_c: float) -> Reading:
     if 0 < near <= last:
         above = read_slab(borders.slabs[near], second_wt, max(temperature_c, corners[near]), ON_BORDER_WT)
         under = read_slab(borders.slabs[near - 1], second_wt, min(temperature_c, corners[near]), ON_BORDER_WT)
+        if above.field == under.field and (above.on_boundary or under.on_boundary):
+            # Borders may meet here in a point (a melting point): off it shows what lies on each side.
+            upper_c = min(corners[near] + ON_INVARIANT_C, corners[near + 1])
+            lower_c = max(corners[near] - ON_INVARIANT_C, corners[near - 1])
+            upper = read_slab(borders.slabs[near], second_wt, upper_c, ON_BORDER_WT)
+            lower = read_slab(borders.slabs[near - 1], second_wt, lower_c, ON_BORDER_WT)
+            if len(upper.phases) == len(lower.phases) == 1:
+                above, under = upper, lower
         if above.field != under.field:
             return Reading(above.field, above.phases, True, under)
         return above if above.on_boundary or not under.on_boundary else under

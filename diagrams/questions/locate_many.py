@@ -60,7 +60,7 @@ def locate_many(diagram: Diagram, second_wt: Floats, temperature_c: Floats) -> R
         rows = order[bounds[k] : bounds[k + 1]]
         rows = rows[~outside[rows]]
         if rows.size:
-            _read(slab, rows, x[rows], np.maximum(t[rows], slab.low_c), writer)
+            _read(slab, rows, x[rows], _above(slab, x[rows], t[rows]), writer)
     writer.codes[outside] = len(writer.names)
     return Readings(tuple(writer.names), writer.codes, writer.liquid, outside)
 
@@ -86,6 +86,17 @@ class _Writer:
             name, kind = beside.phases[end], beside.kinds[end]
         self.codes[rows] = self.code(name)
         self.liquid[rows] = float(kind == "liquid")
+
+
+def _above(slab: Slab, x: Floats, t: Floats) -> Floats:
+    """Temperatures moved into the slab; where borders meet in a point on its floor, off that point."""
+    t = np.maximum(t, slab.low_c)
+    off_c = min(slab.low_c + ON_INVARIANT_C, slab.high_c)
+    for strip in slab.strips:
+        point = strip.left.at(slab.low_c)
+        if point == strip.right.at(slab.low_c):
+            t = np.where((t < off_c) & (np.abs(x - point) <= ON_BORDER_WT), off_c, t)
+    return t
 
 
 def _read(slab: Slab, rows: NDArray[np.intp], x: Floats, t: Floats, writer: _Writer) -> None:

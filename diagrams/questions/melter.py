@@ -77,6 +77,7 @@ class PrintedState:
     liquid_mass_fraction: float | None
     on_boundary: bool
     below: None = None
+    coexisting: tuple[str, ...] = ()
 
 
 class Melter(ABC):

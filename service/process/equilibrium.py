@@ -18,6 +18,8 @@ from service.schemas.equilibrium import (
 )
 from service.schemas.source import polygon_source
 
+_COUNTED = {2: "two", 3: "three", 4: "four", 5: "five"}
+
 
 def equilibrium_of(subject: Placed, temperature_c: float) -> EquilibriumAnswer:
     """Phases, amounts and compositions; OutsideData names `temperature_c`."""
@@ -30,7 +32,8 @@ def equilibrium_of(subject: Placed, temperature_c: float) -> EquilibriumAnswer:
         liquid_mass_fraction=found.liquid_mass_fraction,
         on_boundary=found.on_boundary,
         just_below=state_shown(found.below) if found.below is not None else None,
-        note=_note(subject),
+        coexisting=list(found.coexisting),
+        note=_note(subject, found),
         source=subject.source,
         safety=safety_for(subject.elements, subject.process, temperature_c),
     )
@@ -86,7 +89,14 @@ def state_shown(found: Equilibrium | PrintedState) -> State:
     )
 
 
-def _note(subject: Placed) -> str | None:
+def _note(subject: Placed, found: Equilibrium | PrintedState) -> str | None:
+    if found.coexisting:
+        *others, last = found.coexisting
+        return (
+            f"At this temperature {_COUNTED.get(len(found.coexisting), 'several')} phases coexist: "
+            f"{', '.join(others)} and {last}. Their amounts are not fixed while it lasts: heat turns the "
+            "state given in just_below into the one answered, that just above."
+        )
     filler = subject.alloy.filler
     if subject.melter.method != "standard table" or filler is None:
         return None

@@ -73,7 +73,15 @@ class EquilibriumAnswer(Answer):
         description="At an invariant temperature (a eutectic, a melting point), where the phases change all "
         "at once: the state just below; what is answered above is the state just above. Otherwise null."
     )
-    note: str | None = Field(description="What to mind where only printed temperatures are known.")
+    coexisting: list[str] = Field(
+        description="At an invariant temperature the phases that coexist there, liquid first: three at a "
+        "eutectic of two elements. Their amounts are not fixed then, and go from those just below to those "
+        "just above as heat is taken in. Otherwise empty.",
+        examples=[["L", "(Pb)", "(Sn)"]],
+    )
+    note: str | None = Field(
+        description="What to mind: phases that coexist, or that only printed temperatures are known."
+    )
     source: SourceUsed
 
 

@@ -112,6 +112,48 @@ def test_at_the_eutectic_both_sides_are_told(ask):
     ends = eutectic["compositions_wt"]
     by_hand = (40 - ends["(Pb)"]) / (ends["L"] - ends["(Pb)"])
     assert answer["liquid_mass_fraction"] == pytest.approx(by_hand, abs=1e-6)
+    assert answer["coexisting"] == ["L", "(Pb)", "(Sn)"]
+    assert "three phases coexist: L, (Pb) and (Sn)" in answer["note"]
+
+
+@pytest.mark.parametrize("diagram", ["pb-sn", "cu-zn", "au-sn", "ag-sn"])
+def test_at_every_invariant_its_phases_coexist_and_beside_it_none_do(ask, diagram):
+    """Between the outermost phases of each reaction; a degree above or below only the field is there."""
+    published = ask("GET", f"/v1/diagrams/{diagram}").json()
+    first, second = published["elements"]
+    tried = 0
+    for invariant in published["invariants"]:
+        ends = sorted(invariant["compositions_wt"].values())
+        if len(ends) != 3 or ends[2] - ends[0] < 0.5:
+            continue
+        tried += 1
+        wt = 0.3 * ends[0] + 0.7 * ends[2]
+        alloy = {"composition_wt": {first: 100 - wt, second: wt}}
+        at_c = invariant["temperature_c"]
+        found = ask("POST", "/v1/equilibrium", json={"alloy": alloy, "temperature_c": at_c}).json()
+        assert found["on_boundary"]
+        assert set(found["coexisting"]) == set(invariant["compositions_wt"]), invariant
+        for there_c in (at_c - 0.01, at_c + 0.01):
+            beside = ask("POST", "/v1/equilibrium", json={"alloy": alloy, "temperature_c": there_c}).json()
+            assert (beside["coexisting"], beside["note"], beside["just_below"]) == ([], None, None)
+    assert tried
+
+
+@pytest.mark.parametrize("diagram", ["pb-sn", "cu-zn", "ag-cu", "al-si"])
+def test_a_melting_point_is_where_two_phases_coexist(ask, diagram):
+    published = ask("GET", f"/v1/diagrams/{diagram}").json()
+    first, second = published["elements"]
+    melting = [i for i in published["invariants"] if len(set(i["compositions_wt"].values())) == 1]
+    assert melting
+    for point in melting:
+        wt = point["compositions_wt"]["L"]
+        alloy = {"composition_wt": {first: 100 - wt, second: wt}}
+        question = {"alloy": alloy, "temperature_c": point["temperature_c"]}
+        found = ask("POST", "/v1/equilibrium", json=question).json()
+        assert (found["field"], found["on_boundary"]) == ("L", True)
+        assert set(found["coexisting"]) == set(point["compositions_wt"])
+        assert found["just_below"]["liquid_mass_fraction"] == 0
+        assert "two phases coexist" in found["note"]
 
 
 def test_the_source_is_named(ask):
