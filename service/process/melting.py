@@ -2,6 +2,7 @@
 
 from collections.abc import Sequence
 
+from diagrams.errors import OutsideData
 from diagrams.fillers import FILLERS_EDITION, FILLERS_GUIDANCE
 from diagrams.questions.melter import Melter, Span
 from service.process.placed import Placed, about
@@ -25,7 +26,7 @@ def melting_of(
     with about(subject, where):
         solidus, liquidus = melter.kept(0.0), melter.needed(1.0)
         points = points_of(melter)
-        fractions = melter.liquid_fractions(temperatures_c)
+        fractions = _fractions_at(melter, temperatures_c)
     asked = list(zip(temperatures_c, fractions, strict=True))
     return MeltingAnswer(
         alloy=subject.shown,
@@ -40,6 +41,20 @@ def melting_of(
             subject.elements, subject.process, max(liquidus.safe_high, *temperatures_c, -273.15)
         ),
     )
+
+
+def _fractions_at(melter: Melter, temperatures_c: Sequence[float]) -> list[float | None]:
+    """Liquid fraction at temperatures; OutsideData names the first that lies beyond the data."""
+    try:
+        return melter.liquid_fractions(temperatures_c)
+    except OutsideData:
+        for k, temperature_c in enumerate(temperatures_c):
+            try:
+                melter.liquid_fractions([temperature_c])
+            except OutsideData as error:
+                error.field = f"temperatures_c.{k}"
+                raise
+        raise
 
 
 def span_of(span: Span) -> TemperatureSpan:

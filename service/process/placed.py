@@ -46,9 +46,11 @@ def placed(asked: AlloyAsked, where: str = "alloy") -> Placed:
         return _placed(*asked.key)
 
 
-def placed_text(text: str, leave_out_below_wt: float | None = None) -> Placed:
-    """The alloy of an address line; raises as `placed` does, and names the field `alloy`."""
-    return _placed_text(text, leave_out_below_wt)
+def placed_text(
+    text: str, leave_out_below_wt: float | None = None, tolerance: Amounts | None = None
+) -> Placed:
+    """The alloy of an address line; raises as `placed` does, naming `alloy` or `tolerance_wt`."""
+    return _placed_text(text, leave_out_below_wt, tolerance)
 
 
 def placed_or_known(asked: AlloyAsked, where: str) -> tuple[Placed | None, Alloy]:
@@ -108,8 +110,11 @@ def _placed(
 
 
 @lru_cache(maxsize=4096)
-def _placed_text(text: str, leave_out_below_wt: float | None) -> Placed:
-    return _place(parse_alloy(text), "alloy", "alloy", leave_out_below_wt)
+def _placed_text(text: str, leave_out_below_wt: float | None, tolerance: Amounts | None) -> Placed:
+    if tolerance is None:
+        return _place(parse_alloy(text), "alloy", "alloy", leave_out_below_wt)
+    alloy = parse_alloy(text, dict(tolerance))
+    return _place(alloy, "alloy", "tolerance_wt", leave_out_below_wt, tolerance)
 
 
 def _place(

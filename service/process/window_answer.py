@@ -12,6 +12,7 @@ from service.process.window_parts import Part, Term
 from service.process.window_terms import EarlierJoint, UpperLimit
 from service.process.window_verdict import Collision
 from service.safety import safety_for
+from service.schemas.address import tolerance_of
 from service.schemas.window import (
     CollisionShown,
     JointShown,
@@ -54,7 +55,8 @@ def window_of(question: WindowQuestion) -> WindowAnswer:
 
 def window_at(address: WindowAddress) -> WindowAnswer:
     """The window asked for in an address line."""
-    filler = placed_text(address.alloy, address.leave_out_traces_below_wt)
+    tolerance = tolerance_of(address.tolerance_wt)
+    filler = placed_text(address.alloy, address.leave_out_traces_below_wt, tolerance)
     limits = [] if address.limit_c is None else [UpperLimit(THE_LIMIT, address.limit_c)]
     if address.known_limit is not None:
         known = upper_limit(address.known_limit, "known_limit")

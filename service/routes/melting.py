@@ -6,8 +6,9 @@ from fastapi import Body
 
 from service.process.melting import melting_of
 from service.process.placed import placed, placed_text
-from service.routes.parameters import AlloyText, TracesQuery
+from service.routes.parameters import AlloyText, TemperaturesQuery, ToleranceQuery, TracesQuery
 from service.routes.strict import new_router
+from service.schemas.address import numbers_of, tolerance_of
 from service.schemas.melting import MeltingAnswer, MeltingQuestion
 
 router = new_router("Melting")
@@ -56,6 +57,12 @@ def ask_melting(question: Annotated[MeltingQuestion, Body(openapi_examples=EXAMP
 
 
 @router.get("/melting", summary="Melting range and curve, by address line")
-def get_melting(alloy: AlloyText, traces_below_wt: TracesQuery = None) -> MeltingAnswer:
+def get_melting(
+    alloy: AlloyText,
+    tolerance: ToleranceQuery = None,
+    temperatures: TemperaturesQuery = None,
+    traces_below_wt: TracesQuery = None,
+) -> MeltingAnswer:
     """Give the same answer as `POST /v1/melting`, for an alloy in one string."""
-    return melting_of(placed_text(alloy, traces_below_wt), where="")
+    subject = placed_text(alloy, traces_below_wt, tolerance_of(tolerance))
+    return melting_of(subject, numbers_of(temperatures, "temperatures_c"), where="")

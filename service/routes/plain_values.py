@@ -1,13 +1,12 @@
 """Values in an address line are as strict as in a body: numbers as JSON writes them, true or false."""
 
-import re
 from typing import Any, Literal, get_args
 
 from service.complaints import Complaint
+from service.schemas.address import NUMBER
 
 Kind = Literal["number", "switch"]
 
-_NUMBER = re.compile(r"-?(?:0|[1-9][0-9]*)(?:\.[0-9]+)?(?:[eE][+-]?[0-9]+)?")
 _NO_FINITE_NUMBER = frozenset({"nan", "inf", "-inf", "infinity", "-infinity"})  # the models say so themselves
 
 
@@ -23,7 +22,7 @@ def complaint_about(kind: Kind, name: str, text: str) -> Complaint | None:
         if text in ("true", "false"):
             return None
         return f"“{name}” must be true or false.", "Write true or false, in lower case."
-    if _NUMBER.fullmatch(text) or text.lower() in _NO_FINITE_NUMBER:
+    if NUMBER.fullmatch(text) or text.lower() in _NO_FINITE_NUMBER:
         return None
     if "," in text:
         return f"“{name}” must be a number.", "Write the decimals after a point, such as 183.5."

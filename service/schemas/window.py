@@ -5,6 +5,7 @@ from typing import Annotated
 from pydantic import BaseModel, ConfigDict, Field
 
 from diagrams.questions.traces import MOST_TRACE_WT
+from service.schemas.address import LONGEST_LIST, TOLERANCE
 from service.schemas.alloy import TRACES, AlloyAsked, AlloyUsed
 from service.schemas.base import Answer, AnswerModel, StrictModel
 from service.schemas.melting import TemperatureSpan
@@ -94,6 +95,13 @@ class WindowAddress(BaseModel):
     superheat_c: Difference = Field(default=0.0, description=_SUPERHEAT)
     sensor_tolerance_c: Difference = Field(default=0.0, description=_SENSOR)
     spread_c: Difference = Field(default=0.0, description=_SPREAD)
+    tolerance_wt: str | None = Field(
+        default=None,
+        min_length=1,
+        max_length=LONGEST_LIST,
+        description=TOLERANCE,
+        examples=["Sn:0.5,Pb:0.5"],
+    )
     leave_out_traces_below_wt: Annotated[float, Field(gt=0, le=MOST_TRACE_WT)] | None = Field(
         default=None, description=TRACES
     )

@@ -154,15 +154,63 @@ def test_the_address_line_gives_the_same_answer(ask):
 
 
 @pytest.mark.parametrize(
+    ("tolerance", "tolerance_wt"),
+    [(None, None), ("Sn:0.5", {"Sn": 0.5}), ("Pb:1,Sn:0.5", {"Pb": 1, "Sn": 0.5})],
+)
+@pytest.mark.parametrize("temperatures_c", [[], [185, 183.5, 200]])
+def test_the_address_line_takes_a_tolerance_and_temperatures(ask, tolerance, tolerance_wt, temperatures_c):
+    address = {"alloy": "Sn60Pb40"}
+    if tolerance:
+        address["tolerance_wt"] = tolerance
+    if temperatures_c:
+        address["temperatures_c"] = ",".join(map(str, temperatures_c))
+    alloy = {"designation": "Sn60Pb40", "tolerance_wt": tolerance_wt}
+    posted = ask("POST", "/v1/melting", json={"alloy": alloy, "temperatures_c": temperatures_c})
+    got = ask("GET", "/v1/melting", params=address)
+    assert (got.status_code, got.content) == (200, posted.content)
+    limits = {"Pb": {"lowest": 39, "highest": 41}, "Sn": {"lowest": 59.5, "highest": 60.5}}
+    if tolerance_wt:
+        assert got.json()["alloy"]["limits_wt"].items() >= {el: limits[el] for el in tolerance_wt}.items()
+
+
+@pytest.mark.parametrize(
+    ("more", "field"),
+    [
+        ({"tolerance_wt": "0.5"}, "tolerance_wt"),
+        ({"tolerance_wt": "Sn=0.5"}, "tolerance_wt"),
+        ({"tolerance_wt": "Sn:0.5,Sn:0.6"}, "tolerance_wt"),
+        ({"tolerance_wt": "Sn:0.5,"}, "tolerance_wt"),
+        ({"tolerance_wt": "Sn:+0.5"}, "tolerance_wt.Sn"),
+        ({"tolerance_wt": "Sn:1e999"}, "tolerance_wt.Sn"),
+        ({"tolerance_wt": "Sn:-1"}, "tolerance_wt.Sn"),
+        ({"tolerance_wt": "Ag:0.5"}, "tolerance_wt.Ag"),
+        ({"temperatures_c": "185,hot"}, "temperatures_c.1"),
+        ({"temperatures_c": "185, 200"}, "temperatures_c.1"),
+        ({"temperatures_c": "185,,200"}, "temperatures_c.1"),
+        ({"temperatures_c": "185,200,500"}, "temperatures_c.2"),
+        ({"temperatures_c": "185,nan"}, "temperatures_c.1"),
+        ({"temperatures_c": ""}, "temperatures_c"),
+    ],
+)
+def test_what_is_wrong_with_a_list_in_the_address_is_named(ask, more, field):
+    answer = ask("GET", "/v1/melting", params={"alloy": "Sn60Pb40"} | more)
+    assert answer.status_code == 422
+    (error,) = answer.json()["errors"]
+    assert (error["field"], error["parameter"]) == (field, field.partition(".")[0])
+    assert error["remedy"]
+
+
+@pytest.mark.parametrize(
     ("alloy", "more", "field"),
     [
-        ({"designation": "Sn63Pb37"}, {"temperatures_c": [190, 500]}, "temperatures_c"),
+        ({"designation": "Sn63Pb37"}, {"temperatures_c": [190, 500]}, "temperatures_c.1"),
         ({"designation": "Sn63Pb37"}, {"temperatures_c": [190, "200"]}, "temperatures_c.1"),
         ({"designation": "Sn63Pb37"}, {"temperatures_c": [190.0] * 10_001}, "temperatures_c"),
         ({"composition_wt": {"Cu": 39.5, "Sn": 60.5}, "tolerance_wt": {"Cu": 1}}, {}, "alloy.tolerance_wt"),
         ({"composition_wt": {"Sn": 63, "Pb": 37}, "tolerance_wt": {"Sn": -1}}, {}, "alloy.tolerance_wt.Sn"),
         ({"composition_wt": {"Fe": 90, "C": 10}}, {}, "alloy.composition_wt"),
-        ({"designation": "BNi-2"}, {"temperatures_c": [-274]}, "temperatures_c"),
+        ({"designation": "BNi-2"}, {"temperatures_c": [1000, -274, 9]}, "temperatures_c.1"),
+        ({"designation": "SAC305"}, {"temperatures_c": [220, 230, 9000]}, "temperatures_c.2"),
     ],
 )
 def test_what_is_wrong_is_named(ask, alloy, more, field):

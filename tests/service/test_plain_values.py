@@ -91,3 +91,17 @@ def test_bodies_in_another_coding_are_refused_with_the_remedy(ask, body, headers
 def test_a_body_coded_as_itself_is_read(ask):
     headers = {"Content-Type": "application/json", "Content-Encoding": "identity"}
     assert ask("POST", "/v1/equilibrium", content=BODY, headers=headers).status_code == 200
+
+
+def test_the_tolerance_of_a_window_in_an_address_is_that_of_a_body(ask):
+    address = {"alloy": "Sn60Pb40", "target_liquid_fraction": 1, "tolerance_wt": "Sn:2", "limit_c": 230}
+    got = ask("GET", "/v1/window", params=address).json()
+    alloy = {"designation": "Sn60Pb40", "tolerance_wt": {"Sn": 2}}
+    limits = [{"name": "limit", "limit_c": 230}]
+    body = {"alloy": alloy, "target_liquid_fraction": 1, "upper_limits": limits}
+    posted = ask("POST", "/v1/window", json=body).json()
+    assert got == posted
+    without = ask("GET", "/v1/window", params=address | {"tolerance_wt": "Sn:0"}).json()
+    assert without["minimum_peak_c"] < got["minimum_peak_c"]
+    wrong = ask("GET", "/v1/window", params=address | {"tolerance_wt": "Sn"}).json()["errors"]
+    assert wrong[0]["field"] == "tolerance_wt"
