@@ -5,14 +5,8 @@ from dataclasses import dataclass
 from typing import Literal
 
 from service.process.bounds import Bounds
-from service.process.profiles.limits import (
-    Checked,
-    Levels,
-    Limits,
-    any_checks,
-    between,
-    joint_checks,
-)
+from service.process.profiles.demands import Demand, Levels
+from service.process.profiles.limits import Checked, held
 from service.process.profiles.liquid import Points, liquid_along
 from service.process.profiles.trace import (
     Moment,
@@ -82,24 +76,26 @@ class Judged:
 
 def judge(
     sensors: Sequence[Sensor],
-    limits: Limits,
+    demands: Sequence[Demand],
     levels: Levels,
     window: Bounds,
     hold_still_c: float,
     curve: Points | None,
+    most_spread_c: float | None = None,
 ) -> Judged:
     """Hold a run against its demands. At least one sensor has to sit on a joint.
 
     `window` bounds the peaks of joints (°C); parts are held to its upper bound and their own. `curve` is
-    the melting curve as (°C, liquid fraction) upwards, None where it is unknown.
+    the melting curve as (°C, liquid fraction) upwards, None where it is unknown. `most_spread_c` bounds the
+    difference between the highest and the lowest peak of joints.
     """
-    judged = tuple(_sensor(sensor, limits, levels, window, curve) for sensor in sensors)
+    judged = tuple(_sensor(sensor, demands, levels, window, curve) for sensor in sensors)
     joints = [s for s in judged if s.sensor.kind == "joint"]
     run_checks: list[Checked] = []
-    if limits.most_peak_spread_c is not None:
+    if most_spread_c is not None:
         peaks = [s.peak.value for s in joints]
-        bounds = Bounds(high=limits.most_peak_spread_c)
-        run_checks += between("peak spread between joints", max(peaks) - min(peaks), bounds, "°C")
+        bounds = Bounds(high=most_spread_c)
+        run_checks += held("peak spread between joints", max(peaks) - min(peaks), bounds, "°C")
     named = [(c, s.sensor.trace.name) for s in judged for c in s.checks]
     everything: list[tuple[Checked, str | None]] = [*named, *((c, None) for c in run_checks)]
     # the order of the sensors must not decide: equals are told apart by name
@@ -128,25 +124,21 @@ def hold_still(joints: Sequence[Trace], solidus_c: float, frozen_c: float) -> Ho
 
 
 def _sensor(
-    sensor: Sensor,
-    limits: Limits,
-    levels: Levels,
-    window: Bounds,
-    curve: Points | None,
+    sensor: Sensor, demands: Sequence[Demand], levels: Levels, window: Bounds, curve: Points | None
 ) -> SensorJudged:
-    trace = sensor.trace
-    if sensor.kind == "joint":
-        checks = joint_checks(trace, limits, levels, window)
-    else:
-        own = [c for c in (window.high, sensor.limit_c) if c is not None]
-        bounds = Bounds(high=min(own, default=None))
-        checks = [*between("peak", peak(trace).value, bounds, "°C"), *any_checks(trace, limits)]
-    liquid = () if curve is None or sensor.kind == "part" else liquid_along(trace, curve)
+    trace, joint = sensor.trace, sensor.kind == "joint"
+    top = peak(trace)
+    own = [c for c in (window.high, sensor.limit_c) if c is not None]
+    bounds = Bounds(window.low if joint else None, min(own, default=None))
+    checks = held("peak", top.value, bounds, "°C")
+    for demand in demands:
+        if joint or not demand.joints_only:
+            checks += demand.check(trace, levels)
     return SensorJudged(
         sensor,
-        peak(trace),
+        top,
         tuple(checks),
         time_above(trace, levels.solidus_c),
         time_above(trace, levels.target_c, or_at=True),
-        liquid,
+        liquid_along(trace, curve) if joint and curve is not None else (),
     )

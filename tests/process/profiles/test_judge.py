@@ -6,31 +6,33 @@ import numpy as np
 import pytest
 
 from service.process.bounds import Bounds
-from service.process.profiles.judge import Sensor, hold_still, judge
-from service.process.profiles.limits import (
-    Checked,
+from service.process.profiles.demands import (
+    Demand,
+    Freezing,
     Levels,
-    Limits,
     NearPeak,
+    Peak,
+    Rate,
     Soak,
+    TimeAbove,
     ToPeak,
 )
+from service.process.profiles.judge import Sensor, hold_still, judge
+from service.process.profiles.limits import Checked
 from service.process.profiles.trace import Trace
 
 LEVELS = Levels(solidus_c=183.0, liquidus_c=190.0, target_c=190.0)
 CURVE = [(25.0, 0.0), (183.0, 0.0), (183.0, 0.5), (190.0, 1.0), (400.0, 1.0)]
-LIMITS = Limits(
-    averaging_s=10.0,
-    rise_c_per_s=Bounds(high=3.0),
-    fall_c_per_s=Bounds(high=5.0),
-    freezing_c_per_s=Bounds(low=2.0, high=4.5),
-    above_solidus_s=Bounds(low=30.0, high=90.0),
-    at_target_s=Bounds(low=20.0),
-    soak=Soak(120.0, 160.0, Bounds(60.0, 120.0)),
-    near_peak=NearPeak(5.0, Bounds(high=30.0)),
-    to_peak=ToPeak(25.0, Bounds(high=300.0)),
-    most_peak_spread_c=10.0,
-)
+DEMANDS: list[Demand] = [
+    Rate("rise", Bounds(high=3.0), 10.0),
+    Rate("fall", Bounds(high=5.0), 10.0),
+    Freezing(Bounds(low=2.0, high=4.5), 10.0),
+    TimeAbove("solidus", Bounds(low=30.0, high=90.0)),
+    TimeAbove("target", Bounds(low=20.0)),
+    Soak(120.0, 160.0, Bounds(60.0, 120.0)),
+    NearPeak(5.0, Bounds(high=30.0)),
+    ToPeak(25.0, Bounds(high=300.0)),
+]
 
 
 def run(name: str, peak_c: float, start_c: float = 25.0) -> Trace:
@@ -45,7 +47,7 @@ def by_name(checks: tuple[Checked, ...], limit: str, side: str) -> Checked:
 
 
 def test_known_margins() -> None:
-    found = judge([Sensor(run("pad", 215.0))], LIMITS, LEVELS, Bounds(205.0, 225.0), 183.0, CURVE)
+    found = judge([Sensor(run("pad", 215.0))], DEMANDS, LEVELS, Bounds(205.0, 225.0), 183.0, CURVE)
     (pad,) = found.sensors
     # 32 °C over the solidus at 2 °C/s, 8 s, 32 °C at 4 °C/s
     assert pad.time_above_solidus_s == pytest.approx(16.0 + 8.0 + 8.0)
@@ -78,13 +80,13 @@ def test_known_margins() -> None:
 
 def test_on_the_bound_passes_with_no_margin() -> None:
     window = Bounds(215.0, 225.0)
-    found = judge([Sensor(run("pad", 215.0))], LIMITS, LEVELS, window, 183.0, CURVE)
+    found = judge([Sensor(run("pad", 215.0))], DEMANDS, LEVELS, window, 183.0, CURVE)
     check = by_name(found.sensors[0].checks, "peak", "at least")
     assert check.margin == 0.0
     assert check.passed
     assert found.passed
     assert found.tightest == check
-    under = judge([Sensor(run("pad", 215.0 - 1e-5))], LIMITS, LEVELS, window, 183.0, CURVE)
+    under = judge([Sensor(run("pad", 215.0 - 1e-5))], DEMANDS, LEVELS, window, 183.0, CURVE)
     assert not under.passed
 
 
@@ -92,7 +94,7 @@ def test_order_of_sensors_does_not_matter() -> None:
     runs = [run("a", 214.0), run("b", 214.0), run("c", 221.0)]
     verdicts = set()
     for order in permutations(runs):
-        found = judge([Sensor(t) for t in order], LIMITS, LEVELS, Bounds(205.0, 225.0), 183.0, CURVE)
+        found = judge([Sensor(t) for t in order], DEMANDS, LEVELS, Bounds(205.0, 225.0), 183.0, CURVE)
         assert found.tightest is not None
         verdicts.add((found.passed, found.tightest, found.tightest_sensor, found.hold_still))
     assert len(verdicts) == 1
@@ -102,11 +104,12 @@ def test_spread_is_between_joints_and_parts_know_their_limit() -> None:
     part = Sensor(run("relay", 240.0), "part", limit_c=230.0)
     found = judge(
         [Sensor(run("a", 212.0)), Sensor(run("b", 218.0)), part],
-        LIMITS,
+        DEMANDS,
         LEVELS,
         Bounds(205.0, 245.0),
         183.0,
         CURVE,
+        most_spread_c=10.0,
     )
     (spread,) = found.run_checks
     assert spread.value == pytest.approx(6.0)
@@ -122,7 +125,7 @@ def test_what_the_record_does_not_show_is_not_met() -> None:
     whole = run("pad", 215.0)
     cut = whole.between(0.0, whole.end_s - 40.0)  # ends while the joint is still molten
     assert cut.temperature_c[-1] > 190.0
-    found = judge([Sensor(cut)], LIMITS, LEVELS, Bounds(205.0, 225.0), 183.0, CURVE)
+    found = judge([Sensor(cut)], DEMANDS, LEVELS, Bounds(205.0, 225.0), 183.0, CURVE)
     check = by_name(found.sensors[0].checks, "cooling rate through freezing", "at least")
     assert (check.value, check.margin, check.passed) == (None, None, False)
     assert check.why is not None
@@ -142,7 +145,30 @@ def test_hold_still_runs_from_the_first_to_the_last() -> None:
 def test_a_limit_never_makes_a_failed_run_pass() -> None:
     trace = run("pad", 215.0)
     window = Bounds(205.0, 225.0)
-    free = judge([Sensor(trace)], Limits(), LEVELS, window, 183.0, CURVE)
-    held = judge([Sensor(trace)], Limits(above_solidus_s=Bounds(low=40.0)), LEVELS, window, 183.0, CURVE)
+    free = judge([Sensor(trace)], [], LEVELS, window, 183.0, CURVE)
+    held = judge([Sensor(trace)], [TimeAbove("solidus", Bounds(low=40.0))], LEVELS, window, 183.0, CURVE)
     assert free.passed
     assert not held.passed
+
+
+def test_demands_of_a_standard_stand_beside_ones_own() -> None:
+    standard = "J-STD-020D Pb-free assembly: "
+    demands: list[Demand] = [
+        TimeAbove(183.0, Bounds(60.0, 150.0), standard),
+        Rate("rise", Bounds(high=3.0), 10.0, above_c=183.0, origin=standard),
+        Rate("fall", Bounds(high=3.5), 1000.0, above_c=183.0, origin=standard),
+        NearPeak(5.0, Bounds(high=5.0), of_c=218.0, origin=standard),
+        Peak(Bounds(high=218.0), standard),
+    ]
+    found = judge([Sensor(run("pad", 215.0))], [*DEMANDS, *demands], LEVELS, Bounds(), 183.0, CURVE)
+    (pad,) = found.sensors
+    wanted = {
+        ("time above 183 °C", "at least"): -28.0,
+        ("fastest rise above 183 °C", "at most"): 1.0,
+        # 8 s held and 8 s falling by 32 °C: the whole of it is shorter than the averaging time
+        ("fastest fall above 183 °C", "at most"): 3.5 - 2.0,
+        ("time within 5 °C of 218 °C", "at most"): 5.0 - (1.0 + 8.0 + 0.5),
+        ("peak", "at most"): 3.0,
+    }
+    for (limit, side), margin in wanted.items():
+        assert by_name(pad.checks, standard + limit, side).margin == pytest.approx(margin, abs=1e-9), limit
