@@ -23,8 +23,10 @@ def said(answer):
     return " ".join(text.words for text in read_svg(answer.content)[1])
 
 
-@pytest.mark.parametrize("address", [DIAGRAM + "?", MELTING + "&"])
-def test_png_is_the_default_and_svg_is_offered(ask, address):
+@pytest.mark.parametrize(
+    ("address", "subject"), [(DIAGRAM + "?", "diagram=pb-sn"), (MELTING + "&", "alloy=Sn60Pb40")]
+)
+def test_png_is_the_default_and_svg_is_offered(ask, address, subject):
     plain, png, svg = (ask("GET", address + more) for more in ("", "format=png", "format=svg"))
     assert plain.content == png.content
     assert png.headers["content-type"] == "image/png"
@@ -33,7 +35,7 @@ def test_png_is_the_default_and_svg_is_offered(ask, address):
     assert "Local rules and licensed practice decide." in said(svg)
     for answer in (png, svg):
         assert answer.headers["content-security-policy"] == POLICY
-        assert answer.headers["link"] == '</v1/safety>; rel="help"'
+        assert answer.headers["link"] == f'</v1/safety?{subject}>; rel="help"'
         assert answer.headers["x-content-type-options"] == "nosniff"
 
 

@@ -30,6 +30,16 @@ def test_process_chooses_the_flux():
     assert {"rosin flux fume", "fluoride and borate flux"} <= topics(["Sn"])
 
 
+def test_torches_acid_flux_and_nitrogen_are_spoken_of_where_they_are_used():
+    brazing = " ".join(note.text for note in safety_for(["Ag", "Cu"], "braze").notes)
+    assert "flashback" in brazing
+    assert "oil and grease off everything that carries oxygen" in brazing
+    soldering = " ".join(note.text for note in safety_for(["Sn"], "solder").notes)
+    assert "hydrogen chloride" in soldering
+    assert "Nitrogen of a reflow oven" in soldering
+    assert "acetylene" not in soldering
+
+
 @pytest.mark.parametrize(
     ("temperature_c", "warned"), [(None, False), (906.9, False), (907.0, True), (1200, True)]
 )
