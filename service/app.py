@@ -31,7 +31,7 @@ from service.routes import (
     window,
 )
 from service.routes.health import Readiness
-from service.safety import safety_edition, safety_for
+from service.safety import safety_edition, safety_of_examples
 from service.settings import Settings, settings_from
 
 ROUTERS = (
@@ -116,5 +116,5 @@ def openapi(app: FastAPI) -> dict[str, Any]:
         _, made = models_json_schema(
             [(problems.Problem, "serialization")], ref_template="#/components/schemas/{model}"
         )
-        app.openapi_schema = describe_errors(schema, made["$defs"], safety_for(frozenset()))
+        app.openapi_schema = describe_errors(schema, made["$defs"], safety_of_examples())
     return app.openapi_schema

@@ -11,7 +11,7 @@ from starlette.responses import HTMLResponse, Response
 
 from service import pages
 from service.problems import KINDS, Refusal
-from service.safety import safety_for
+from service.safety import safety_for, safety_of_examples
 
 router = APIRouter(include_in_schema=False)
 docs_router = APIRouter(include_in_schema=False)
@@ -85,7 +85,7 @@ def _page(title: str, body: str, *, up: str = "", operations: bool = False) -> H
         pages.page(
             title=title,
             body=body,
-            safety=safety_for(frozenset()),
+            safety=safety_of_examples() if operations else safety_for(frozenset()),
             icon=up + address_of("favicon.svg"),
             styles=[up + style for style in styles],
             scripts="\n".join(f'<script defer src="{up}{script}"></script>' for script in scripts),

@@ -10,6 +10,7 @@ from diagrams.errors import DataFault
 from service.schemas.base import RegulationPointer, Safety, SafetyNote
 
 Process = Literal["solder", "braze"]
+PROCESSES: tuple[Process, Process] = ("solder", "braze")
 
 
 class _Entry(NamedTuple):
@@ -40,6 +41,12 @@ def safety_for(
     asked = elements if isinstance(elements, frozenset) else frozenset(elements)
     passed = None if temperature_c is None else sum(temperature_c >= limit for limit in _notes().thresholds_c)
     return _chosen(asked, process, passed)
+
+
+def safety_of_examples() -> Safety:
+    """Return the cautions for pages that show examples: those that always hold, and those on lead."""
+    solder, braze = (safety_for({"Pb"}, process) for process in PROCESSES)
+    return solder.model_copy(update={"notes": [note for note in solder.notes if note in braze.notes]})
 
 
 def safety_edition() -> str:

@@ -106,6 +106,7 @@ def test_no_parameter_is_said_to_take_null():
 
 def test_the_cautions_stand_in_the_description_too():
     assert {"notes", "regulations", "reminder"} <= SCHEMA["x-safety"].keys()
+    assert "lead" in [note["topic"] for note in SCHEMA["x-safety"]["notes"]]  # the examples hold some
 
 
 def test_nothing_refers_to_what_is_not_there():

@@ -86,3 +86,8 @@ def test_what_does_not_speak_of_lead_is_not_warned_of_it(ask):
     assert "lead" not in topics(ask("GET", "/v1/melting?alloy=SAC30"))
     assert "lead" not in topics(ask("POST", "/v1/melting", json={"alloy": {"designation": "SAC30"}}))
     assert "lead" not in topics(ask("GET", "/nowhere"))
+
+
+def test_the_page_of_operations_shows_leaded_examples_and_so_the_notes_on_lead(ask):
+    assert "Lead harms nerves" in ask("GET", "/docs").text
+    assert "Lead harms nerves" not in ask("GET", "/").text
