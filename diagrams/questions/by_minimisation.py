@@ -42,6 +42,11 @@ class ByMinimisation(Melter):
         self._curves: dict[tuple[tuple[str, float], ...], FollowedCurve] = {}
         self._spans: dict[tuple[str, float], Span] = {}
 
+    @property
+    def effort(self) -> int:
+        """Corners of the tolerance times elements less one; about a second each, the first time."""
+        return len(self._box.corners) * (len(self.alloy.composition_wt) - 1)
+
     @cached_property
     def finder(self) -> StateFinder:
         """Finds states of the nominal composition."""

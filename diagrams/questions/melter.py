@@ -102,6 +102,11 @@ class Melter(ABC):
         return tuple(self.alloy.composition_wt)
 
     @property
+    def effort(self) -> int:
+        """How much work questions about this alloy take; 0 where answers are read off stored data."""
+        return 0
+
+    @property
     def range_c(self) -> tuple[float, float]:
         """Solidus and liquidus at the nominal composition; OutsideData beyond the data."""
         if self.curve is None:

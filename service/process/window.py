@@ -86,7 +86,7 @@ def find_window(filler: Placed, demands: Demands, where: str = "alloy") -> Windo
     """
     _check_names(demands)
     joints = ((f"earlier_joints.{k}.alloy", joint.subject) for k, joint in enumerate(demands.earlier_joints))
-    check_effort([(where, filler), *joints])
+    check_effort([(where, filler), *joints], tolerances=True)
     tolerance_c = demands.sensor_tolerance_c
     with about(filler, where):
         solidus_c = filler.melter.kept(0.0).nominal
