@@ -32,25 +32,34 @@ THE_LIMIT, THE_KNOWN_LIMIT = "limit", "known limit"
 def window_of(question: WindowQuestion) -> WindowAnswer:
     """The window asked for in a body."""
     filler = placed(question.alloy)
-    demands = Demands(
+    demands = demands_of(question)
+    return _shown(filler, demands, find_window(filler, demands))
+
+
+def demands_of(question: WindowQuestion, where: str = "") -> Demands:
+    """What a body asks of a joint besides its filler; `where` is the path of the question, for errors.
+
+    Raises InvalidInput for limits, and as `placed` does for earlier joints.
+    """
+    before = f"{where}." if where else ""
+    return Demands(
         target_liquid_fraction=question.target_liquid_fraction,
         superheat_c=question.superheat_c,
         sensor_tolerance_c=question.sensor_tolerance_c,
         spread_c=question.spread_c,
         upper_limits=tuple(
-            _limit(limit, f"upper_limits.{k}") for k, limit in enumerate(question.upper_limits)
+            _limit(limit, f"{before}upper_limits.{k}") for k, limit in enumerate(question.upper_limits)
         ),
         earlier_joints=tuple(
             EarlierJoint(
                 joint.name,
-                placed(joint.alloy, f"earlier_joints.{k}.alloy"),
+                placed(joint.alloy, f"{before}earlier_joints.{k}.alloy"),
                 joint.max_liquid_fraction,
                 joint.margin_c,
             )
             for k, joint in enumerate(question.earlier_joints)
         ),
     )
-    return _shown(filler, demands, find_window(filler, demands))
 
 
 def window_at(address: WindowAddress) -> WindowAnswer:
