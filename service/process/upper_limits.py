@@ -89,7 +89,8 @@ def upper_limits() -> Mapping[str, UpperKnown]:
             raise DataFault(f"Two upper limits have the key {key}.", field=PROCESS_LIMITS)
         taken.add(designation_key(key))
         source = Source(row["source"], row["how"], row["confidence"])
-        found[key] = UpperKnown(key, kind, subject, float(row[column]), row["notes"], source)
+        note = f"its range begins at {row['min']} °C" if kind == FLUX else row["notes"]
+        found[key] = UpperKnown(key, kind, subject, float(row[column]), note, source)
     return MappingProxyType(found)
 
 

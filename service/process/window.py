@@ -124,7 +124,6 @@ def find_window(filler: Placed, demands: Demands, where: str = "alloy") -> Windo
             demands.upper_limits,
             upper,
             target_liquid_fraction=demands.target_liquid_fraction,
-            sensor_tolerance_c=tolerance_c,
             solidus_c=solidus_c,
         ),
     )

@@ -14,7 +14,10 @@ class Part:
 
 @dataclass(frozen=True)
 class Term:
-    """One bound on a reading; added up in their order, its parts give it to the last digit."""
+    """One bound on a reading; added up in their order, its parts give it to the last digit.
+
+    After the first, which is a temperature, all parts add to it or all take off.
+    """
 
     name: str
     parts: tuple[Part, ...]
@@ -28,12 +31,12 @@ class Term:
     def reason(self) -> str:
         """All of it in words: the temperature it starts from, what is added or taken off, the sum."""
         start, *more = self.parts
-        told = [f"{'plus' if p.value_c > 0 else 'minus'} {p.name} {abs(p.value_c):g} °C" for p in more]
-        changes = [text for text, part in zip(told, more, strict=True) if part.value_c]
+        changes = [f"{part.name} {abs(part.value_c):g} °C" for part in more if part.value_c]
         if not changes:
             return start.reason
+        sign = "Plus" if self.value_c > start.value_c else "Minus"
         listed = f"{', '.join(changes[:-1])} and {changes[-1]}" if len(changes) > 1 else changes[0]
-        return f"{start.reason} {listed[0].upper()}{listed[1:]}: {self.value_c:.2f} °C."
+        return f"{start.reason} {sign} {listed}: {self.value_c:.2f} °C."
 
 
 def superheat(superheat_c: float) -> Part:

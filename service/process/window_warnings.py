@@ -27,7 +27,6 @@ def warnings_of(
     upper: Sequence[Term],
     *,
     target_liquid_fraction: float,
-    sensor_tolerance_c: float,
     solidus_c: float,
 ) -> tuple[Warned, ...]:
     """All warnings, in a steady order."""
@@ -47,7 +46,7 @@ def warnings_of(
             text = f"“{term.name}” allows {term.value_c:.2f} °C; the filler's solidus is {solidus_c:.2f} °C."
             found.append(Warned("limit-below-solidus", text))
     for joint in joints:
-        found += _melting_at_once(joint, sensor_tolerance_c)
+        found += _melting_at_once(joint)
     found += [Warned("alloy-note", text) for text in _noted([filler, *(j.subject for j in joints)])]
     found += [Warned("base-metal-solidus", text) for text in _at_the_solidus(limits)]
     found += [Warned("printed-values", text) for text in _printed([filler, *(j.subject for j in joints)])]
@@ -56,9 +55,12 @@ def warnings_of(
     return tuple(found)
 
 
-def _melting_at_once(joint: EarlierJoint, tolerance_c: float) -> Iterable[Warned]:
-    """An earlier joint whose bound stands on a temperature where much of it melts at once."""
-    if joint.max_liquid_fraction >= 1.0 or joint.margin_c + tolerance_c > 0.0:
+def _melting_at_once(joint: EarlierJoint) -> Iterable[Warned]:
+    """An earlier joint whose bound stands on a temperature where much of it melts at once.
+
+    A sensor tolerance keeps no distance: if the reading is that wrong, the joint is right there.
+    """
+    if joint.max_liquid_fraction >= 1.0 or joint.margin_c > 0.0:
         return
     melter = joint.subject.melter
     limit = melter.kept(joint.max_liquid_fraction)
@@ -66,8 +68,8 @@ def _melting_at_once(joint: EarlierJoint, tolerance_c: float) -> Iterable[Warned
     if jump > _JUMP:
         yield Warned(
             "melts-at-once",
-            f"At {limit.safe_low:.2f} °C {100 * jump:.3g} % of {joint.name} melts at once, and neither "
-            f"margin_c nor sensor_tolerance_c keeps a distance from it.",
+            f"At {limit.safe_low:.2f} °C {100 * jump:.3g} % of {joint.name} melts at once, and no margin_c "
+            f"keeps a distance from it.",
         )
 
 

@@ -162,6 +162,31 @@ def test_a_base_metal_bounds_the_window_and_says_that_it_begins_to_melt():
     assert "base-metal-solidus" not in [w.code for w in distant.warnings]
 
 
+def test_reasons_say_plus_or_minus_once():
+    found = window(
+        AlloyAsked(designation="Sn63Pb37"),
+        limits=[UpperLimit("board", 260.0, 5.0), UpperLimit("part", 250.0)],
+        superheat_c=15,
+        sensor_tolerance_c=2,
+    )
+    assert found.lower_terms[0].reason.endswith(
+        f". Plus superheat 15 °C and sensor tolerance 2 °C: {found.minimum_peak_c:.2f} °C."
+    )
+    assert found.upper_terms[0].reason == (
+        "board may reach 260 °C. Minus margin 5 °C and sensor tolerance 2 °C: 253.00 °C."
+    )
+    assert found.upper_terms[1].reason == "part may reach 250 °C. Minus sensor tolerance 2 °C: 248.00 °C."
+    assert window(AlloyAsked(designation="Sn63Pb37"), limits=[250.0]).upper_terms[0].reason == (
+        "part may reach 250 °C."
+    )
+
+
+def test_a_flux_says_where_its_range_begins():
+    flux = upper_limit("flux FH10", "x")
+    assert flux.limit_c == 800
+    assert "begins at 550 °C" in flux.told
+
+
 def test_the_distance_advised_below_aluminium_stands_in_the_warning():
     sheet = UpperLimit("sheet", 643.0, 0.0, upper_limit("al-3003", "x"))
     found = window(AlloyAsked(composition_wt={"Al": 88, "Si": 12}), limits=[sheet])

@@ -181,6 +181,8 @@ def test_right_on_the_eutectic_the_joint_is_still_solid_and_a_warning_tells():
     (seen,) = found.earlier_joints
     assert (seen.nominal, seen.worst) == (0, 0)
     assert "melts-at-once" in [w.code for w in found.warnings]
+    read_low = window(BISMUTH, joints=[joint(TIN_LEAD)], sensor_tolerance_c=2)
+    assert "melts-at-once" in [w.code for w in read_low.warnings]  # a wrong reading keeps no distance
     distant = window(BISMUTH, joints=[joint(TIN_LEAD, margin_c=1)])
     assert "melts-at-once" not in [w.code for w in distant.warnings]
     # a tolerance taken off and put back on must not tip the joint over its eutectic
