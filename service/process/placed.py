@@ -132,7 +132,8 @@ def _place(
             error.remedy = f"{tabulated(alloy.filler)} {error.remedy}".strip()
         raise
     melter = found.melter
-    used = melter.alloy if melter.limits_wt else replace(melter.alloy, limits_wt=_NO_LIMITS)
+    reckoned = {el: pair for el, pair in melter.alloy.limits_wt.items() if el in melter.alloy.composition_wt}
+    used = replace(melter.alloy, limits_wt=MappingProxyType(reckoned) if melter.limits_wt else _NO_LIMITS)
     return Placed(
         melter.alloy,
         melter,

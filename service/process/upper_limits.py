@@ -103,13 +103,13 @@ def upper_limit(text: str, field: str) -> UpperKnown:
     asked = designation_key(text)
     if asked in known:
         return known[asked]
-    near = [known[key].key for key in difflib.get_close_matches(asked, known, n=5, cutoff=0.5)]
-    near += [limit.key for key, limit in known.items() if asked in key and limit.key not in near]
+    keys = [key for key in known if asked and asked in key]
+    keys += difflib.get_close_matches(asked, known, n=5, cutoff=0.5)
+    near = list(dict.fromkeys(known[key].key for key in keys))
     raise InvalidInput(
         f"“{shown(text)}” is no stored upper limit.",
         field=field,
-        remedy="GET /v1/known-limits lists all keys."
-        + (f" Near: {', '.join(near[:5])}." if near and asked else ""),
+        remedy="GET /v1/known-limits lists all keys." + (f" Near: {', '.join(near[:5])}." if near else ""),
     )
 
 

@@ -142,6 +142,9 @@ def test_a_key_that_is_none_is_refused_with_its_neighbours():
     assert refused.value.field == "upper_limits.0.known"
     assert "al-6061" in refused.value.remedy
     with pytest.raises(InvalidInput) as refused:
+        upper_limit("C36000", "known")
+    assert "Near: brass-c36000-free-cutting" in refused.value.remedy
+    with pytest.raises(InvalidInput) as refused:
         upper_limit("- -", "known")
     assert "Near" not in refused.value.remedy
 

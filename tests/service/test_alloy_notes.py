@@ -27,6 +27,8 @@ def test_an_element_that_the_standard_requires_and_the_nominal_leaves_out_is_nam
         assert name in note
     (note,) = notes(ask, {"designation": "RBCuZn-A"})
     assert "0.25 to 1 wt% Sn" in note
+    used = melting(ask, {"designation": "RBCuZn-A"}).json()["alloy"]
+    assert set(used["limits_wt"]) <= set(used["composition_wt"])  # only what the answer reckons with
     assert ask("GET", "/v1/equilibrium?alloy=RBCuZn-A&temperature_c=800").json()["alloy"]["notes"] == [note]
     window = ask("GET", "/v1/window?alloy=RBCuZn-A&target_liquid_fraction=1&limit_c=1000").json()
     assert [w["text"] for w in window["warnings"] if w["code"] == "alloy-note"] == [f"RBCuZn-A: {note}"]
