@@ -104,7 +104,6 @@ def _placed(
     form: Form, value: str | Amounts, tolerance: Amounts | None, leave_out_below_wt: float | None
 ) -> Placed:
     alloy = alloy_of(form, value, tolerance)
-    check_tolerance(alloy, dict(tolerance or ()))
     tolerance_field = form if tolerance is None else "tolerance_wt"
     return _place(alloy, form, tolerance_field, leave_out_below_wt, tolerance or ())
 
@@ -125,6 +124,7 @@ def _place(
     tolerance: Amounts = (),
 ) -> Placed:
     try:
+        check_tolerance(alloy, dict(tolerance))
         found = melter_for(catalog(), alloy, leave_out_below_wt)
     except DiagramsError as error:
         error.field = tolerance_field if error.field == "tolerance_wt" else field

@@ -46,6 +46,8 @@ def test_a_pure_metal_with_a_tolerance_is_refused(ask):
         assert refused.status_code == 422
         assert refused.json()["errors"][0]["field"] == "alloy.tolerance_wt"
         assert notes(ask, alloy | {"tolerance_wt": {"Sn": 0}}) == []
+    refused = ask("GET", "/v1/melting?alloy=Sn100&tolerance_wt=Sn:0.5")
+    assert refused.json()["errors"][0]["field"] == "tolerance_wt"
     joint = {"name": "a", "alloy": {"composition_wt": {"Sn": 100}, "tolerance_wt": {"Sn": 1}}}
     refused = ask(
         "POST",

@@ -184,7 +184,7 @@ def test_the_same_question_gives_the_same_bytes(ask):
         ),
         ([{"alloy": TIN, "plating_thickness_um": 1}], "parts.0.area_mm2"),
         ([{"alloy": TIN, "plating_thickness_um": 1, "area_mm2": -3}], "parts.0.area_mm2"),
-        ([part({"composition_wt": {"Xx": 100}}, 1)], "parts.0.alloy.composition_wt"),
+        ([part({"composition_wt": {"Xx": 100}}, 1)], "parts.0.alloy.composition_wt.Xx"),
         ([part({"designation": "no such"}, 1)], "parts.0.alloy.designation"),
         ([part(TIN, 1), part({"composition_wt": {"Fe": 100}}, 1)], "parts"),
         ([part(TIN, 1e6), part(LEAD, 1e-9)], "parts"),
