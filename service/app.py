@@ -27,6 +27,7 @@ from service.routes import (
     known_limits,
     melting,
     mixtures,
+    profiles,
     safety,
     window,
 )
@@ -43,6 +44,7 @@ ROUTERS = (
     known_limits.router,
     mixtures.router,
     dissolution.router,
+    profiles.router,
     fillers.router,
     safety.router,
     health.router,

@@ -26,6 +26,10 @@ TAGS = [
     },
     {"name": "Window", "description": "Lowest and highest peak temperature for a joint, and what sets them."},
     {
+        "name": "Checking runs",
+        "description": "Recorded temperature profiles against the window and further limits.",
+    },
+    {
         "name": "Mixing",
         "description": "What becomes of a joint when alloys, finishes and base metals melt into each other.",
     },

@@ -14,6 +14,7 @@ from service.json_body import UnreadableJson, UnusableObject, read_json
 from service.problems import MOST_ERRORS, FieldError, Refusal, counted, field_error
 from service.routes.plain_values import Kind, complaint_about, kind_of
 
+PARSED = "meltband.parsed"  # where a body that was read before waits in the scope
 _OTHER_PLACES = (params.Path, params.Header, params.Cookie)
 _LONG_BODY = 200_000  # bytes; longer ones are read in a thread, so that short questions need not wait
 _UTF_8 = frozenset({"utf-8", "utf8", "us-ascii", "ascii"})  # ASCII is a part of UTF-8
@@ -24,6 +25,8 @@ class StrictRequest(Request):
 
     async def json(self) -> Any:
         """Parse the body; raise a Refusal that names the place."""
+        if PARSED in self.scope:
+            return self.scope[PARSED]
         body = await self.body()
         try:
             if len(body) > _LONG_BODY:
@@ -43,11 +46,7 @@ class StrictRoute(APIRoute):
     def get_route_handler(self) -> Callable[[Request], Coroutine[Any, Any, Response]]:
         """Wrap the framework's handler with the checks."""
         handler = super().get_route_handler()
-        known = {
-            f.alias: kind_of(f.field_info.annotation)
-            for f in get_flat_params(self.dependant)
-            if not isinstance(f.field_info, _OTHER_PLACES)
-        }
+        known = self.known_parameters()
         takes_json = self.body_field is not None and not isinstance(self.body_field.field_info, params.Form)
 
         async def strict_handler(request: Request) -> Response:
@@ -59,6 +58,14 @@ class StrictRoute(APIRoute):
             return await handler(request)
 
         return strict_handler
+
+    def known_parameters(self) -> dict[str, Kind | None]:
+        """The parameters of the address line, with the kind of value each takes."""
+        return {
+            f.alias: kind_of(f.field_info.annotation)
+            for f in get_flat_params(self.dependant)
+            if not isinstance(f.field_info, _OTHER_PLACES)
+        }
 
 
 def refuse_odd_parameters(request: Request, known: Mapping[str, Kind | None]) -> None:
@@ -112,10 +119,10 @@ def _charset(parameters: str) -> str:
     return "utf-8"
 
 
-def new_router(tag: str, prefix: str = "/v1") -> APIRouter:
+def new_router(tag: str, prefix: str = "/v1", route_class: type[APIRoute] = StrictRoute) -> APIRouter:
     """Make a router whose routes are strict and stand under one heading of the docs page."""
     return APIRouter(
-        prefix=prefix, tags=[tag], route_class=StrictRoute, generate_unique_id_function=_operation_id
+        prefix=prefix, tags=[tag], route_class=route_class, generate_unique_id_function=_operation_id
     )
 
 

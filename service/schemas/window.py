@@ -20,17 +20,17 @@ Temperature = Annotated[float, Field(ge=-273.15, le=5000)]
 KnownKey = Annotated[str, Field(min_length=1, max_length=120)]
 Target = Annotated[float, Field(gt=0, le=1)]
 
-_TARGET = (
+TARGET = (
     "Share of the filler's mass that must be liquid at the coldest joint, above 0 to 1; 1 for a joint that "
     "has to flow and fill, less for one that is wiped or pressed."
 )
-_SUPERHEAT = "How far above that temperature the coldest joint has to get, °C; 15 to 30 is usual in reflow."
+SUPERHEAT = "How far above that temperature the coldest joint has to get, °C; 15 to 30 is usual in reflow."
 _KNOWN = (
     "Key of a stored limit instead of a temperature of your own: the solidus of a base metal, the "
     "classification temperature of a component, the upper end of a flux; `GET /v1/known-limits` lists all."
 )
-_SENSOR = "By how much a reading may differ from the true temperature, either way, °C."
-_SPREAD = "By how much the hottest joint lies above the coldest, °C."
+SENSOR = "By how much a reading may differ from the true temperature, either way, °C."
+SPREAD = "By how much the hottest joint lies above the coldest, °C."
 
 
 class LimitAsked(StrictModel):
@@ -67,10 +67,10 @@ class WindowQuestion(StrictModel):
     """A joint to be made: its filler, and all that bounds its temperature."""
 
     alloy: AlloyAsked = Field(description="The filler.")
-    target_liquid_fraction: Target = Field(description=_TARGET)
-    superheat_c: Difference = Field(default=0.0, description=_SUPERHEAT)
-    sensor_tolerance_c: Difference = Field(default=0.0, description=_SENSOR)
-    spread_c: Difference = Field(default=0.0, description=_SPREAD)
+    target_liquid_fraction: Target = Field(description=TARGET)
+    superheat_c: Difference = Field(default=0.0, description=SUPERHEAT)
+    sensor_tolerance_c: Difference = Field(default=0.0, description=SENSOR)
+    spread_c: Difference = Field(default=0.0, description=SPREAD)
     upper_limits: list[LimitAsked] = Field(
         default=[], max_length=MOST_LIMITS, description="Limits of parts, boards and base metals."
     )
@@ -91,10 +91,10 @@ class WindowAddress(BaseModel):
         "where one element may be left open and takes the balance (`Sn60Pb`).",
         examples=["Sn63Pb37"],
     )
-    target_liquid_fraction: Target = Field(description=_TARGET, examples=[1])
-    superheat_c: Difference = Field(default=0.0, description=_SUPERHEAT)
-    sensor_tolerance_c: Difference = Field(default=0.0, description=_SENSOR)
-    spread_c: Difference = Field(default=0.0, description=_SPREAD)
+    target_liquid_fraction: Target = Field(description=TARGET, examples=[1])
+    superheat_c: Difference = Field(default=0.0, description=SUPERHEAT)
+    sensor_tolerance_c: Difference = Field(default=0.0, description=SENSOR)
+    spread_c: Difference = Field(default=0.0, description=SPREAD)
     tolerance_wt: str | None = Field(
         default=None,
         min_length=1,

@@ -4,11 +4,10 @@ The margin is in the unit of the demand: positive inside, zero on the bound, neg
 """
 
 from dataclasses import dataclass
-from typing import Literal
 
 from service.process.bounds import Bounds
+from service.schemas.profile_words import Side
 
-Side = Literal["at least", "at most"]
 ONE_SIDED_C = 25.0  # a temperature bounded on one side only: 0 °C is no natural zero to take shares of
 ROUNDING = 1e-9  # relative: a margin this small comes from the arithmetic, not from the run
 

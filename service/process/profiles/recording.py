@@ -5,26 +5,17 @@ Nothing is mended silently: each repair that was made is listed with the sensor 
 
 from collections.abc import Sequence
 from dataclasses import dataclass
-from typing import Literal, get_args
 
 import numpy as np
 from numpy.typing import NDArray
 
 from diagrams.errors import InvalidInput
 from service.process.profiles.trace import Floats, Trace
+from service.schemas.profile_words import Repair
 
 Flags = NDArray[np.bool_]
 Ints = NDArray[np.int64]
 
-Repair = Literal[
-    "leave out empty sensors",
-    "leave out missing samples",
-    "sort times",
-    "merge equal times",
-    "leave out jumps",
-    "bridge gaps",
-]
-REPAIRS: tuple[Repair, ...] = get_args(Repair)
 GAP_INTERVALS = 10.0  # a pause longer than this many usual intervals is a gap
 LEAST_GAP_S = 2.0  # but pauses up to this are none
 JUMP_C = 30.0  # a change from sample to sample of more than this, at more than the fastest rate, is a jump

@@ -1,7 +1,7 @@
 """Recordings as text tables: time in the first column, one sensor a column, names in the first line.
 
 Columns are parted by semicolon, tab or comma; with the first two, numbers may have a decimal comma. RFC 4180
-quotes are understood. Lines that begin with # are comments.
+quotes are understood. Lines that begin with # are none of the table.
 """
 
 import csv
@@ -14,8 +14,8 @@ import numpy as np
 from diagrams.errors import InvalidInput
 from service.process.profiles.recording import Channel
 from service.process.profiles.trace import Floats
+from service.schemas.profile_words import MOST_SAMPLES, MOST_SENSORS
 
-MOST_SENSORS, MOST_SAMPLES = 64, 200_000
 SEPARATORS = (";", "\t", ",")
 PLAIN = re.compile(r"[0-9eE+\-.,; \t\n]*")
 NUMBER = re.compile(r"[+-]?(\d+([.,]\d*)?|[.,]\d+)([eE][+-]?\d+)?")
