@@ -27,13 +27,14 @@ def stable(sample: Sample, overall: Floats, temperature_k: float, near: States |
     """
     if near is not None:
         try:
-            return _settle(sample, overall, near.moved(np.array([temperature_k])))
+            return settle(sample, overall, near.moved(np.array([temperature_k])))
         except NotConverged:
             pass  # the global search does not depend on the neighbour
-    return _settle(sample, overall, search(sample, overall, temperature_k))
+    return settle(sample, overall, search(sample, overall, temperature_k))
 
 
-def _settle(sample: Sample, overall: Floats, start: States) -> States:
+def settle(sample: Sample, overall: Floats, start: States) -> States:
+    """The stable state at the temperature of a start, changing its set of phases as needed."""
     system = sample.system
     where = f"at {start.temperatures_k[0]:.3f} K"
     for _ in range(MOST_CHANGES):
@@ -57,7 +58,7 @@ def _settle(sample: Sample, overall: Floats, start: States) -> States:
         if low.height[0] >= -UNDER_TANGENT:
             _check_windows(sample, found)
             return found
-        start = _entered(sample, found, int(low.phase[0]), low.logs[0])
+        start = entered(sample, found, int(low.phase[0]), low.logs[0])
     raise NotConverged(f"no lowest set of phases found {where}")
 
 
@@ -90,7 +91,7 @@ def _twin(states: States) -> int | None:
     return None
 
 
-def _entered(sample: Sample, states: States, number: int, log: Floats) -> States:
+def entered(sample: Sample, states: States, number: int, log: Floats) -> States:
     """The state with a further phase; where that would be one too many, the one used up first leaves."""
     grown = States(
         (*states.sets, number),

@@ -17,7 +17,7 @@ MOST_STEPS = 40
 TOLERANCE = 1e-11  # on potentials over RT, and on relative mass balance
 LONGEST_STEP = 1.6  # of ln x
 DILUTE_LOG = -4.0  # ln x below which an element may fall by any factor in one step
-LOWEST_LOG = -300.0
+LOWEST_LOG, HIGHEST_LOG = -300.0, 3.0
 
 Flags = NDArray[np.bool_]
 
@@ -66,11 +66,13 @@ class States:
 
 
 def solve(system: ManySystem, overall: Floats, start: States) -> States:
-    """Equilibrium of the phases of `start` at its temperatures, for mole fractions `overall` (n,), all > 0.
+    """Equilibrium of the phases of `start` at its temperatures, for mole fractions `overall`, all > 0.
 
-    States that do not converge are flagged, not raised.
+    `overall` is one composition (n,) or one a state (B, n). States that do not converge are flagged, not
+    raised.
     """
     phases = [system.phase(s) for s in start.sets]
+    overall = np.broadcast_to(overall, start.mu.shape)
     every = system.at(start.temperatures_k)
     mu = start.mu / every.rt[:, None]
     logs = [u.copy() for u in start.logs]
@@ -79,8 +81,14 @@ def solve(system: ManySystem, overall: Floats, start: States) -> States:
     open_rows: Ints = np.arange(len(mu))
     at = every
     for _ in range(MOST_STEPS):
-        matrix, residual = _equations(
-            start.sets, phases, at, overall, mu[open_rows], [u[open_rows] for u in logs], amounts[open_rows]
+        matrix, residual = equations(
+            start.sets,
+            phases,
+            at,
+            overall[open_rows],
+            mu[open_rows],
+            [u[open_rows] for u in logs],
+            amounts[open_rows],
         )
         with np.errstate(invalid="ignore"):
             size = np.max(np.abs(residual), axis=1)
@@ -92,29 +100,34 @@ def solve(system: ManySystem, overall: Floats, start: States) -> States:
             break
         if not keep.all():
             open_rows, matrix, residual, at = open_rows[keep], matrix[keep], residual[keep], at.take(keep)
-        step = _linear(matrix, -residual)
-        column = 0
-        longest: Floats = np.zeros(len(step))
-        for u, phase in zip(logs, phases, strict=True):
-            if isinstance(phase, Mixed):
-                part = step[:, column : column + phase.size]
-                part = np.where(u[open_rows] > DILUTE_LOG, np.abs(part), part)
-                longest = np.maximum(longest, part.max(axis=1))
-                column += phase.size
-        scale: Floats = LONGEST_STEP / np.maximum(longest, LONGEST_STEP)
-        step *= scale[:, None]
+        step = shortened(phases, logs, open_rows, linear(matrix, -residual))
         column = 0
         for u, phase in zip(logs, phases, strict=True):
             if isinstance(phase, Mixed):
                 moved = u[open_rows] + step[:, column : column + phase.size]
-                u[open_rows] = np.clip(moved, LOWEST_LOG, 3.0)
+                u[open_rows] = np.clip(moved, LOWEST_LOG, HIGHEST_LOG)
                 column += phase.size
-        mu[open_rows] += step[:, column : column + len(overall)]
-        amounts[open_rows] += step[:, column + len(overall) :]
+        mu[open_rows] += step[:, column : column + mu.shape[1]]
+        amounts[open_rows] += step[:, column + mu.shape[1] :]
     return States(start.sets, start.temperatures_k, mu * every.rt[:, None], tuple(logs), amounts, converged)
 
 
-def _linear(matrix: Floats, right: Floats) -> Floats:
+def shortened(phases: list[Mixed | Fixed], logs: list[Floats], rows: Ints, step: Floats) -> Floats:
+    """Steps (B, unknowns) cut so that no ln x moves by more than LONGEST_STEP, dilute ones downwards aside."""
+    column = 0
+    longest: Floats = np.zeros(len(step))
+    for u, phase in zip(logs, phases, strict=True):
+        if isinstance(phase, Mixed):
+            part = step[:, column : column + phase.size]
+            part = np.where(u[rows] > DILUTE_LOG, np.abs(part), part)
+            longest = np.maximum(longest, part.max(axis=1))
+            column += phase.size
+    scale: Floats = LONGEST_STEP / np.maximum(longest, LONGEST_STEP)
+    return step * scale[:, None]
+
+
+def linear(matrix: Floats, right: Floats) -> Floats:
+    """Solutions (B, unknowns) of B systems of linear equations; NaN for those that have none."""
     try:
         found: Floats = np.asarray(np.linalg.solve(matrix, right[:, :, None])[:, :, 0], dtype=np.float64)
     except np.linalg.LinAlgError:
@@ -127,7 +140,7 @@ def _linear(matrix: Floats, right: Floats) -> Floats:
     return found
 
 
-def _equations(
+def equations(
     sets: tuple[int, ...],
     phases: list[Mixed | Fixed],
     at: AtT,
@@ -136,7 +149,11 @@ def _equations(
     logs: list[Floats],
     amounts: Floats,
 ) -> tuple[Floats, Floats]:
-    n, states = len(overall), len(mu)
+    """Jacobian and residuals of B states: potentials and Σ x of every set, then the mass balance.
+
+    Unknowns: ln x of every solution, potentials over RT, amounts. `overall` (B, n).
+    """
+    states, n = mu.shape
     unknowns = sum(p.size for p in phases if isinstance(p, Mixed)) + n + len(phases)
     matrix, residual = np.zeros((states, unknowns, unknowns)), np.zeros((states, unknowns))
     first_mu = unknowns - n - len(phases)
@@ -164,7 +181,7 @@ def _equations(
         matrix[:, row + inner, first_mu + index] = -1.0
         residual[:, row + m] = x.sum(axis=1) - 1.0
         matrix[:, row + m, column : column + m] = x
-        dissolved = x / overall[index]
+        dissolved = x / overall[:, index]
         residual[:, balance + index] += share[:, None] * dissolved
         matrix[:, balance + index, column + inner] = share[:, None] * dissolved
         matrix[:, balance + index, first_amount + k] = dissolved
