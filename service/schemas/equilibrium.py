@@ -2,7 +2,7 @@
 
 from typing import Annotated, Literal
 
-from pydantic import FailFast, Field
+from pydantic import Field
 
 from service.schemas.alloy import AlloyAsked, AlloyUsed
 from service.schemas.base import Answer, AnswerModel, StrictModel
@@ -11,7 +11,7 @@ from service.schemas.source import SourceUsed
 MOST_POINTS = 200_000
 
 # Reading stops at the first value that is none: so many errors would take longer than the answer.
-Column = Annotated[list[float], FailFast(), Field(min_length=1, max_length=MOST_POINTS)]
+Column = Annotated[list[float], Field(min_length=1, max_length=MOST_POINTS, fail_fast=True)]
 
 
 class EquilibriumQuestion(StrictModel):

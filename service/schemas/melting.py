@@ -2,7 +2,7 @@
 
 from typing import Annotated
 
-from pydantic import FailFast, Field
+from pydantic import Field
 
 from service.schemas.alloy import AlloyAsked, AlloyUsed
 from service.schemas.base import Answer, AnswerModel, StrictModel
@@ -15,7 +15,7 @@ class MeltingQuestion(StrictModel):
     """An alloy, and temperatures at which its liquid fraction is wanted besides."""
 
     alloy: AlloyAsked
-    temperatures_c: Annotated[list[float], FailFast(), Field(max_length=MOST_TEMPERATURES)] = Field(
+    temperatures_c: Annotated[list[float], Field(max_length=MOST_TEMPERATURES, fail_fast=True)] = Field(
         default=[],
         description="Temperatures, °C, at which the liquid fraction is wanted; each must lie in the "
         "`temperature_range_c` of the data.",

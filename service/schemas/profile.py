@@ -15,8 +15,8 @@ from service.schemas.window import (
     WindowQuestion,
 )
 
-Times = Annotated[list[float], Field(max_length=MOST_SAMPLES)]
-Readings = Annotated[list[float | None], Field(max_length=MOST_SAMPLES)]
+Times = Annotated[list[float], Field(max_length=MOST_SAMPLES, fail_fast=True)]
+Readings = Annotated[list[float | None], Field(max_length=MOST_SAMPLES, fail_fast=True)]
 Seconds = Annotated[float, Field(gt=0, le=1e7)]
 Amount = Annotated[float, Field(ge=0, le=1e7)]
 

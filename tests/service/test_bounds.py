@@ -105,6 +105,17 @@ def test_temperatures_are_read_no_further_than_the_first_bad_one(ask):
     assert refused.json()["errors"][0]["field"] == "temperatures_c.50"
 
 
+def test_a_recording_is_read_no_further_than_its_first_bad_value(ask):
+    sensors = [
+        {"name": f"sensor {k}", "time_s": ["x"] * 100_000, "temperature_c": [20, *["y"] * 99_999]}
+        for k in range(3)
+    ]
+    refused = post(ask, "/v1/profile-checks", {"alloy": SNPB, "sensors": sensors})
+    assert found(refused) == 6
+    fields = [error["field"] for error in refused.json()["errors"]]
+    assert fields[-2:] == ["sensors.2.time_s.0", "sensors.2.temperature_c.1"]
+
+
 @pytest.mark.parametrize(
     "body",
     [
