@@ -6,7 +6,9 @@ from typing import Any
 
 Path = tuple[str | int, ...]
 MOST_KEYS = 100  # of one object; no question has as many, and each one too many would be an error to tell
-MOST_OBJECTS = 10_000  # of one body, counted by their opening brackets; no question has as many
+# Of one body, counted by brackets and colons, even those inside texts; no question comes near.
+MOST_BRACKETS = 10_000
+MOST_COLONS = 100_000
 
 
 class UnreadableJson(ValueError):
@@ -35,10 +37,10 @@ class DuplicateKey(UnusableObject):
 
 
 class TooManyObjects(UnusableObject):
-    """The body has more than MOST_OBJECTS objects."""
+    """The body has more than MOST_BRACKETS objects and lists, or more than MOST_COLONS fields."""
 
     def __init__(self) -> None:
-        wrong = f"The body holds more than {MOST_OBJECTS} objects in curly brackets."
+        wrong = f"The body holds more than {MOST_BRACKETS} objects and lists or {MOST_COLONS} fields."
         super().__init__((), wrong, "Ask in smaller parts.")
 
 
@@ -60,7 +62,7 @@ def read_json(body: bytes) -> Any:
     """
     if body.startswith(b"\xef\xbb\xbf"):
         raise UnreadableJson("it begins with a byte order mark, which JSON does not have", (1, 1))
-    if len(body) > MOST_OBJECTS and body.count(b"{") > MOST_OBJECTS:
+    if len(body) > MOST_BRACKETS and _is_crowded(body):
         raise TooManyObjects
     try:
         read = _DECODER.decode(body.decode("utf-8"))
@@ -81,6 +83,11 @@ def read_json(body: bytes) -> Any:
         raise UnreadableJson("brackets nested too deeply") from None
     except ValueError:  # Python reads no integer of more than 4300 digits
         raise UnreadableJson("a whole number with too many digits") from None
+
+
+def _is_crowded(body: bytes) -> bool:
+    """Whether reading would take long for nothing; told without reading."""
+    return body.count(b"{") + body.count(b"[") > MOST_BRACKETS or body.count(b":") > MOST_COLONS
 
 
 class _Unusable(Exception):

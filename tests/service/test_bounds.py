@@ -91,7 +91,7 @@ def test_the_biggest_is_answered_and_the_next_is_refused_by_name(ask, path, bigg
 
 @pytest.mark.parametrize("bad", ["x", None, True, [], {"a": 1}])
 def test_columns_of_bad_values_are_read_no_further_than_the_first(ask, bad):
-    count = 4_000 if isinstance(bad, dict) else MOST_POINTS  # a body may not hold as many objects
+    count = 4_000 if isinstance(bad, dict | list) else MOST_POINTS  # a body may not hold as many
     column = [bad] * count
     body = {"diagram": "pb-sn", "second_wt": column, "temperature_c": [1.0, *column[1:]]}
     refused = post(ask, "/v1/equilibria", body)

@@ -3,8 +3,9 @@ import math
 import pytest
 
 from service.json_body import (
+    MOST_BRACKETS,
+    MOST_COLONS,
     MOST_KEYS,
-    MOST_OBJECTS,
     DuplicateKey,
     TooManyKeys,
     TooManyObjects,
@@ -43,7 +44,7 @@ def test_a_key_given_twice_is_refused_with_its_path(text, path):
         (b'{"a": 1,\n "b": }', (2, 7), "Expecting value"),
         (b'{"a": 1} x', (1, 10), "Extra data"),
         (b'{\n"a": "\xff"}', (2, 7), "no UTF-8"),
-        (b"[" * 200_000, None, "nested too deeply"),
+        (b"[" * 9_000, None, "nested too deeply"),
         (b"[" + b"1" * 5000 + b"]", None, "too many digits"),
         (rb'{"\ud800": 1}', None, "surrogate"),
         (rb'["\\u0041", "\udc00\ud800"]', None, "surrogate"),
@@ -58,14 +59,15 @@ def test_what_is_no_json_is_refused_with_its_place(body, place, words):
 
 
 def test_a_doubled_key_is_found_in_a_large_deep_body_by_looking_at_each_value_once():
-    wide = b"[" * 400 + b"0" + b",0" * 2_000_000 + b"]" * 400
+    deep, wide = 400, 3_000_000
+    body = b'{"wide": %s0%s%s, "next": [%s{"a": 1, "a": 2}]}'
     with pytest.raises(DuplicateKey) as caught:
-        read_json(b'{"wide": %s, "next": [%s{"a": 1, "a": 2}]}' % (wide, b"[]," * 500_000))
-    assert caught.value.path == ("next", 500_000, "a")
+        read_json(body % (b"[" * deep, b",0" * wide, b"]" * deep, b"0," * wide))
+    assert caught.value.path == ("next", wide, "a")
 
 
 @pytest.mark.parametrize(
-    "body", [b'{"a": 1, "a": 2', b'{"a": 1, "a": 2}}', b'[{"a": 1, "a": 2}, ' + b"[" * 200_000]
+    "body", [b'{"a": 1, "a": 2', b'{"a": 1, "a": 2}}', b'[{"a": 1, "a": 2}, ' + b"[" * 9_000]
 )
 def test_what_is_broken_behind_a_doubled_key_is_refused_as_unreadable(body):
     with pytest.raises(UnreadableJson):
@@ -78,9 +80,21 @@ def test_keys_and_objects_are_as_many_as_a_question_may_need_and_no_more():
     with pytest.raises(TooManyKeys) as caught:
         read_json(f'{{"x": [0, {{{", ".join(keys)}}}]}}'.encode())
     assert caught.value.path == ("x", 1)
-    assert len(read_json(b"[" + b"{}," * (MOST_OBJECTS - 1) + b"{}]")) == MOST_OBJECTS
+
+
+@pytest.mark.parametrize("value", [b"{}", b"[]"])
+def test_objects_and_lists_are_bounded_together(value):
+    most = MOST_BRACKETS - 1  # the list around them counts
+    assert len(read_json(b"[" + b",".join([value] * most) + b"]")) == most
     with pytest.raises(TooManyObjects):
-        read_json(b"[" + b"{}," * MOST_OBJECTS + b"{}]")
+        read_json(b"[" + b",".join([value] * (most + 1)) + b"]")
+
+
+def test_fields_are_bounded():
+    objects = [b"{%s}" % b",".join(b'"k%d":0' % k for k in range(100))] * (MOST_COLONS // 100)
+    assert len(read_json(b"[%s]" % b",".join(objects))) == MOST_COLONS // 100
+    with pytest.raises(TooManyObjects):
+        read_json(b'[%s,{"x":0}]' % b",".join(objects))
 
 
 def test_whole_surrogate_pairs_and_escaped_backslashes_are_fine():
