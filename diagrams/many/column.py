@@ -10,14 +10,13 @@ from typing import Any
 
 import numpy as np
 
-from diagrams.elements import MOLAR_MASS
 from diagrams.errors import NotConverged
 from diagrams.gibbs import Floats
 from diagrams.many.crossing import crossing
 from diagrams.many.equilibrium import LEAST_AMOUNT, UNDER_TANGENT, entered, settle, stable, without
 from diagrams.many.newton import States, solve
 from diagrams.many.sample import Sample
-from diagrams.many.system import Fixed
+from diagrams.many.stretch import Stretch, liquid_fraction, stacked, stretch_of
 from diagrams.many.tangent import deepest
 
 STRIDE_K = 4.0  # between temperatures at which a set of phases is proven
@@ -26,26 +25,6 @@ BEYOND_K = 1e-4  # how far beyond a change the next set of phases is proven
 NARROW_K = 1e-6  # changes nearer than this are one
 MOST_CHANGES = 60
 MOST_HALVINGS = 40
-
-
-@dataclass(frozen=True, eq=False)
-class Stretch:
-    """Temperatures between two changes of phases; `states` stand upwards, both ends among them."""
-
-    sets: tuple[int, ...]
-    names: tuple[str, ...]
-    states: States
-    liquid: Floats
-
-    @property
-    def low_k(self) -> float:
-        """Where it begins."""
-        return float(self.states.temperatures_k[0])
-
-    @property
-    def high_k(self) -> float:
-        """Where it ends."""
-        return float(self.states.temperatures_k[-1])
 
 
 @dataclass(frozen=True, eq=False)
@@ -98,7 +77,7 @@ class _Walk:
         while True:
             t = float(rows[-1].temperatures_k[0])
             if t <= self.low_k:
-                return _stacked(rows), None
+                return stacked(rows[::-1]), None
             ahead = np.maximum(t - STRIDE_K * np.arange(1, AHEAD + 1), self.low_k)
             ahead = ahead[: int(np.argmax(ahead <= self.low_k)) + 1] if ahead[-1] <= self.low_k else ahead
             tried = solve(self.sample.system, self.overall, rows[-1].moved(ahead))
@@ -109,7 +88,7 @@ class _Walk:
                 change, beyond = self._change(rows[-1], float(ahead[count]))
                 if change.temperatures_k[0] < rows[-1].temperatures_k[0]:
                     rows.append(change)
-                return _stacked(rows), beyond
+                return stacked(rows[::-1]), beyond
 
     def _proven(self, states: States) -> Any:
         """Which states (B,) are converged, with no negative amount and nothing under the plane."""
@@ -149,7 +128,7 @@ class _Walk:
         raise NotConverged(f"no change of phases found near {under_k:.3f} K")
 
     def _candidates(self, above: States, under: States) -> list[tuple[States, int]]:
-        """What may happen on the way: a phase is used up, or one comes under the plane; as a start for each."""
+        """What may happen on the way, as a start for each: a phase is used up, or comes under the plane."""
         found: list[tuple[States, int]] = []
         if not under.converged[0]:
             return [(above, k) for k in range(len(above.sets))] if len(above.sets) > 1 else []
@@ -196,57 +175,3 @@ class _Walk:
         # the next stretch begins at the change itself
         again = solve(self.sample.system, self.overall, replace(found, temperatures_k=kept.temperatures_k))
         return again if again.converged[0] and again.amounts.min() > -1e-7 else found
-
-
-def liquid_fraction(sample: Sample, states: States) -> Floats:
-    """Liquid share of the mass (B,)."""
-    system = sample.system
-    molar = np.array([MOLAR_MASS[el] for el in system.elements])
-    liquid, whole = np.zeros(len(states.mu)), np.zeros(len(states.mu))
-    for k, number in enumerate(states.sets):
-        mass = np.maximum(states.amounts[:, k], 0.0) * (states.composition(system, k) @ molar)
-        whole += mass
-        if system.phase(number).kind == "liquid":
-            liquid += mass
-    found: Floats = liquid / whole
-    return found
-
-
-def stretch_of(sample: Sample, states: States) -> Stretch:
-    """A stretch with its phases' names, as they are in its middle."""
-    return Stretch(
-        tuple(sorted(states.sets)),
-        names_of(sample, states, len(states.mu) // 2),
-        states,
-        liquid_fraction(sample, states),
-    )
-
-
-def names_of(sample: Sample, states: States, row: int) -> tuple[str, ...]:
-    """Names of the phases of one state, the liquid first."""
-    system = sample.system
-    found = []
-    for k, number in enumerate(states.sets):
-        phase = system.phase(number)
-        if isinstance(phase, Fixed):
-            name = phase.name
-        else:
-            x = states.composition(system, k)[row]
-            shares = dict(zip(system.elements, (x / x.sum()).tolist(), strict=True))
-            name = phase.naming.name(shares, states.sets.count(number) == 1)
-        found.append((phase.kind != "liquid", name))
-    return tuple(name for _, name in sorted(found))
-
-
-def _stacked(rows: list[States]) -> States:
-    """Single states, downwards, as one, upwards."""
-    up = rows[::-1]
-    first = up[0]
-    return States(
-        first.sets,
-        np.concatenate([r.temperatures_k for r in up]),
-        np.vstack([r.mu for r in up]),
-        tuple(np.vstack([r.logs[k] for r in up]) for k in range(len(first.sets))),
-        np.vstack([r.amounts for r in up]),
-        np.concatenate([r.converged for r in up]),
-    )

@@ -113,7 +113,7 @@ def solve(system: ManySystem, overall: Floats, start: States) -> States:
 
 
 def shortened(phases: list[Mixed | Fixed], logs: list[Floats], rows: Ints, step: Floats) -> Floats:
-    """Steps (B, unknowns) cut so that no ln x moves by more than LONGEST_STEP, dilute ones downwards aside."""
+    """Steps (B, unknowns) cut to LONGEST_STEP of any ln x; dilute elements may fall by any factor."""
     column = 0
     longest: Floats = np.zeros(len(step))
     for u, phase in zip(logs, phases, strict=True):

@@ -49,6 +49,8 @@ def search(sample: Sample, overall: Floats, temperature_k: float) -> States:
     columns = _Columns(np.eye(n), np.full(n, FORBIDDEN), [-1] * n)
     for number, part in enumerate(sample.phases):
         phase = system.mixed[number]
+        if len(phase.windows):
+            continue  # comes in below, once its lowest point is known to lie within its limits
         x = np.zeros((len(part.points), n))
         x[:, phase.index] = part.points
         columns.add(x, sample.heights(at, np.zeros((1, n)), number)[0] * at.rt[0], number)

@@ -18,6 +18,7 @@ DILUTE = 0.02  # mole fraction below which an element may fall by any factor in 
 SETTLED = 1e-13  # of RT: fall that Newton's step still promises
 HOPELESS = 0.2  # where the promised fall is less than this share of the height, no way leads under the plane
 LOWEST_LOG = -300.0
+OUTSIDE = 1e-9  # of RT: how much lower a phase must lie beyond its limits to have its lowest point there
 
 
 @dataclass(frozen=True)
@@ -36,7 +37,8 @@ def follow_down(phase: Mixed, values: Floats, rt: Floats, mu: Floats, start: Flo
     """From compositions `start` (B, m) down to the lowest point over the planes mu (B, m).
 
     Gives the heights over RT and ln x. The lowest point met on the way counts, whatever Newton's method
-    does; the way is left early where it can no longer lead under the plane.
+    does; the way is left early where it can no longer lead under the plane. Where it leads out of the
+    compositions the phase is described for, the phase does not count: its height is infinite.
     """
     # an element missing at the start is let in as far as the plane asks for
     u = np.log(np.maximum(start, 1e-13))
@@ -44,15 +46,18 @@ def follow_down(phase: Mixed, values: Floats, rt: Floats, mu: Floats, start: Flo
     wanted = u + (mu - potentials) / rt[:, None]
     u = _normal(np.where(start > 0.0, u, np.clip(wanted, LOWEST_LOG, -3.0)))
     lowest, found = np.full(len(u), np.inf), u.copy()
+    outside = np.full(len(u), np.inf)
     rows: Ints = np.arange(len(u))
     for _ in range(MOST_STEPS):
         potentials, slopes, x = phase.potentials(values, rt, u)
         above = (potentials - mu) / rt[:, None]
         height = np.einsum("bi,bi->b", x, above)
-        better = rows[(height < lowest[rows]) & phase.inside(x)]
-        if better.size:
-            inside = np.isin(rows, better)
-            lowest[better], found[better] = height[inside], u[inside]
+        within = phase.inside(x)
+        better = (height < lowest[rows]) & within
+        if better.any():
+            lowest[rows[better]], found[rows[better]] = height[better], u[better]
+        if not within.all():
+            outside[rows[~within]] = np.minimum(outside[rows[~within]], height[~within])
         # not downhill, or curved the wrong way: the step of an ideal solution, which always leads down
         step = _downhill(slopes / rt[:, None, None], x, above)
         fall = -np.einsum("bi,bi->b", x * step, above)
@@ -66,6 +71,7 @@ def follow_down(phase: Mixed, values: Floats, rt: Floats, mu: Floats, start: Flo
         if not left.all():
             rows, u, values, rt, mu = rows[left], u[left], values[left], rt[left], mu[left]
         u = np.clip(u, LOWEST_LOG, 0.0)
+    lowest[outside < lowest - OUTSIDE] = np.inf
     return lowest, found
 
 

@@ -8,7 +8,7 @@ from functools import cached_property
 from diagrams.alloys import Alloy
 from diagrams.questions.lever import Equilibrium
 from diagrams.questions.many_curve import FollowedCurve, follow
-from diagrams.questions.many_edge import Edge, Passed
+from diagrams.questions.many_edge import Edge, Passed, same_change
 from diagrams.questions.many_place import check_served, place_many, prepared
 from diagrams.questions.many_state import State, StateFinder
 from diagrams.questions.melter import Melter, Method, Span, jump_at, liquid_up_to
@@ -120,17 +120,19 @@ class ByMinimisation(Melter):
     def _edges(self, key: tuple[str, float], nominal_c: float, passed: Passed) -> Span:
         edge = Edge(nominal_c)
         nominal = self._box.composition(self._box.nominal)
+        # first and last liquid come and go with a change of phases, which Newton's method finds again
+        change = self.curve.change_at(nominal_c) if key[1] in (0.0, 1.0) else None
 
-        def question(composition: Composition) -> float:
+        def question(composition: Composition, fine: bool = False) -> float:
             if composition == nominal:
                 return nominal_c
-            return edge.find(self._finder_of(composition), passed)
+            finder = self._finder_of(composition)
+            found_c = None if change is None else same_change(finder, change)
+            return edge.find(finder, passed, fine) if found_c is None else found_c
 
         def finely(value_c: float, at: Composition) -> float:
-            if at == nominal:
-                return nominal_c
             edge.guess_c = value_c
-            return edge.find(self._finder_of(at), passed, fine=True)
+            return question(at, fine=True)
 
         def search() -> Span:
             found = span_over(self._box, question)

@@ -1,19 +1,18 @@
-"""How an alloy of many elements melts: states followed in temperature, every change of phases found.
+"""How an alloy of many elements melts: its column of phases, read as liquid fraction against temperature.
 
-Between changes the liquid fraction is smooth; points are set until straight lines between them are true to
-STRAIGHT. Changes among solids alone, or in the liquid alone, leave no trace in the curve.
+Changes among solids alone, or in the liquid alone, leave no trace in the curve.
 """
 
 from itertools import pairwise
 
-import numpy as np
+from diagrams.errors import InvalidInput, OutsideData
+from diagrams.many.change import Change, change_between
+from diagrams.many.column import Column, column
+from diagrams.many.stretch import smoothed
+from diagrams.questions.many_state import StateFinder
+from diagrams.units import celsius_to_kelvin, kelvin_to_celsius
 
-from diagrams.errors import InvalidInput, NotConverged, OutsideData
-from diagrams.questions.many_state import State, StateFinder
-
-STEP_C = 10.0  # at most, of the first look
-EVENT_C = 1e-4  # how closely a change of phases is found
-STRAIGHT = 1e-4  # liquid fraction
+AT_CHANGE_C = 1e-6
 NOTHING = 1e-9  # liquid fraction: a point this near to a line says nothing
 
 Points = tuple[tuple[float, float], ...]
@@ -22,8 +21,15 @@ Points = tuple[tuple[float, float], ...]
 class FollowedCurve:
     """Liquid fraction as straight lines between points (°C, fraction); a jump is two points at one °C."""
 
-    def __init__(self, points: Points, data_id: str) -> None:
-        self.points, self._data_id = points, data_id
+    def __init__(self, points: Points, data_id: str, column: Column) -> None:
+        self.points, self._data_id, self.column = points, data_id, column
+
+    def change_at(self, temperature_c: float) -> Change | None:
+        """The change of phases at a temperature, if there is one that can be looked for again."""
+        for below, above in pairwise(self.column.stretches):
+            if abs(kelvin_to_celsius(above.low_k) - temperature_c) < AT_CHANGE_C:
+                return change_between(below, above)
+        return None
 
     @property
     def solidus_c(self) -> float:
@@ -88,44 +94,23 @@ def _check(fraction: float) -> None:
 
 
 def follow(finder: StateFinder) -> FollowedCurve:
-    """The melting curve of a composition, from the highest temperature served down to the lowest.
+    """The melting curve of a composition, from the lowest temperature served to the highest.
 
     Where below the solidus no set of solids can be proven, the curve begins at the lowest one proven: among
     solids that are not asked about the data may fail without harm to the melting. Raises NotConverged where
     there is liquid.
     """
     low, high = finder.place.temperature_range_c
-    steps = max(2, int(np.ceil((high - low) / STEP_C)) + 1)
-    states: list[State] = []
-    for t in np.linspace(high, low, steps).tolist():
-        try:
-            states.append(finder.at(t, states[-1] if states else None))
-        except NotConverged:
-            if len(states) < 2 or states[-1].liquid > 0.0:
-                raise
-            break
-    states.reverse()
-    points = [(states[0].temperature_c, states[0].liquid)]
-    for a, b in pairwise(states):
-        points += _between(finder, a, b)
-        points.append((b.temperature_c, b.liquid))
-    return FollowedCurve(_tidy(points), finder.place.file.id)
-
-
-def _between(finder: StateFinder, a: State, b: State) -> list[tuple[float, float]]:
-    if a.liquid == b.liquid and a.liquid in (0.0, 1.0):
-        return []
-    middle_c = 0.5 * (a.temperature_c + b.temperature_c)
-    if b.temperature_c - a.temperature_c < EVENT_C:
-        return [(middle_c, a.liquid), (middle_c, b.liquid)]
-    middle = finder.at(middle_c, b)
-    if a.key == b.key == middle.key and abs(middle.liquid - 0.5 * (a.liquid + b.liquid)) < STRAIGHT:
-        return [(middle_c, middle.liquid)]
-    return [
-        *_between(finder, a, middle),
-        (middle_c, middle.liquid),
-        *_between(finder, middle, b),
-    ]
+    sample, overall = finder.place.sample, finder.overall
+    found = column(sample, overall, celsius_to_kelvin(low), celsius_to_kelvin(high))
+    points: list[tuple[float, float]] = []
+    for stretch in found.stretches:
+        smooth = smoothed(sample, overall, stretch)
+        temperatures_c = [kelvin_to_celsius(t) for t in smooth.states.temperatures_k.tolist()]
+        points += zip(temperatures_c, smooth.liquid.tolist(), strict=True)
+    ends = (low if found.complete else points[0][0], high)
+    points[0], points[-1] = (ends[0], points[0][1]), (ends[1], points[-1][1])
+    return FollowedCurve(_tidy(points), finder.place.file.id, found)
 
 
 def _tidy(points: list[tuple[float, float]]) -> Points:

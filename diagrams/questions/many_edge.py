@@ -8,13 +8,31 @@ from collections.abc import Callable
 from dataclasses import dataclass
 
 from diagrams.errors import OutsideData
+from diagrams.many.change import Change, again, holds
 from diagrams.questions.many_state import State, StateFinder
+from diagrams.units import kelvin_to_celsius
 
 SAME_C = 2e-3  # a guess this near counts as met
 FINE_C = 1e-4
 FIRST_STEP_C = 2.0
 
 Passed = Callable[[float], bool]  # of a liquid fraction
+
+
+def same_change(finder: StateFinder, change: Change) -> float | None:
+    """Where a neighbour's change of phases happens at a composition of the same elements, °C.
+
+    None where it does not, or lies beyond the data.
+    """
+    if change.states.mu.shape[1] != len(finder.elements):
+        return None
+    sample = finder.place.sample
+    found = again(sample, finder.overall, change)
+    if not holds(sample, found)[0]:
+        return None
+    temperature_c = kelvin_to_celsius(float(found.temperatures_k[0]))
+    low, high = finder.place.temperature_range_c
+    return temperature_c if low <= temperature_c <= high else None
 
 
 @dataclass

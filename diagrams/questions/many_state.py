@@ -29,13 +29,16 @@ class State:
 
 
 class StateFinder:
-    """Finds the states of one composition (wt%), each starting from a neighbour if one is given."""
+    """Finds the states of one composition (wt%), each starting from a neighbour if one is given.
+
+    `overall` are its mole fractions (n,), in the order of the place's elements.
+    """
 
     def __init__(self, place: ManyPlace, composition_wt: Mapping[str, float]) -> None:
         self.place = place
         self.elements = place.elements
         at = wt_to_at(dict(composition_wt))
-        self._overall = np.array([at[el] / 100.0 for el in self.elements])
+        self.overall = np.array([at[el] / 100.0 for el in self.elements])
         self._molar = np.array([MOLAR_MASS[el] for el in self.elements])
 
     def at(self, temperature_c: float, near: State | None = None) -> State:
@@ -49,7 +52,7 @@ class StateFinder:
                 remedy=f"Ask between {low:g} and {high:g} °C.",
             )
         start = None if near is None else near.states
-        found = stable(self.place.sample, self._overall, celsius_to_kelvin(temperature_c), start)
+        found = stable(self.place.sample, self.overall, celsius_to_kelvin(temperature_c), start)
         system = self.place.sample.system
         solid = [system.phase(s).kind != "liquid" for s in found.sets]
         if all(solid) or not any(solid):
