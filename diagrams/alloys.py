@@ -211,11 +211,12 @@ def _from_checked(
 
 def _normalised(composition: Mapping[str, float]) -> Mapping[str, float]:
     """Sorted, without zeros, summing to 100; values that already do so are kept to the last digit."""
+    present = [el for el in sorted(composition) if composition[el] > 0.0]
+    if len(present) == 1:  # exactly: a pure metal that rounding put above 100 would lie outside all data
+        return MappingProxyType({present[0]: 100.0})
     total = math.fsum(composition.values())
     factor = 1.0 if abs(total - 100.0) <= _ROUNDING else 100.0 / total
-    return MappingProxyType(
-        {el: composition[el] * factor for el in sorted(composition) if composition[el] > 0.0}
-    )
+    return MappingProxyType({el: composition[el] * factor for el in present})
 
 
 def _limits(

@@ -283,3 +283,10 @@ def test_any_text_gives_an_alloy_or_a_helpful_refusal(text: str) -> None:
 def test_any_numbers_give_an_alloy_or_a_helpful_refusal(composition: dict[str, float]) -> None:
     assert helpful(answer(lambda: alloy_from_wt(composition, composition)))
     assert helpful(answer(lambda: alloy_from_at(composition, composition)))
+
+
+@pytest.mark.parametrize("make", [alloy_from_wt, alloy_from_at])
+@pytest.mark.parametrize("element", ["Sn", "Pb", "Ag", "Cu", "Au", "Al"])
+def test_a_pure_metal_is_exactly_100(make, element: str) -> None:
+    for percent in (99.9, 99.97, 100, 100.03, 100.05, 100.1):
+        assert dict(make({element: percent, "Zn": 0}).composition_wt) == {element: 100.0}
