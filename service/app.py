@@ -29,6 +29,7 @@ from service.routes import (
     mixtures,
     profiles,
     safety,
+    steps,
     window,
 )
 from service.routes.health import Readiness
@@ -45,6 +46,7 @@ ROUTERS = (
     mixtures.router,
     dissolution.router,
     profiles.router,
+    steps.router,
     fillers.router,
     safety.router,
     health.router,

@@ -25,6 +25,7 @@ TAGS = [
         "description": "What is liquid at a temperature; where an alloy begins and ends to melt.",
     },
     {"name": "Window", "description": "Lowest and highest peak temperature for a joint, and what sets them."},
+    {"name": "Step soldering", "description": "Several joints of one assembly, one heating after the other."},
     {
         "name": "Checking runs",
         "description": "Recorded temperature profiles against the window and further limits.",

@@ -48,7 +48,7 @@ def demands_of(question: WindowQuestion, where: str = "") -> Demands:
         sensor_tolerance_c=question.sensor_tolerance_c,
         spread_c=question.spread_c,
         upper_limits=tuple(
-            _limit(limit, f"{before}upper_limits.{k}") for k, limit in enumerate(question.upper_limits)
+            limit_of(limit, f"{before}upper_limits.{k}") for k, limit in enumerate(question.upper_limits)
         ),
         earlier_joints=tuple(
             EarlierJoint(
@@ -94,8 +94,8 @@ def _shown(filler: Placed, demands: Demands, found: Window) -> WindowAnswer:
         feasible=found.feasible,
         setpoint_c=found.setpoint_c,
         width_parts=_parts(found.width_parts),
-        lower_terms=_terms(found.lower_terms),
-        upper_terms=_terms(found.upper_terms),
+        lower_terms=terms_shown(found.lower_terms),
+        upper_terms=terms_shown(found.upper_terms),
         binding_lower=found.binding_lower,
         binding_upper=found.binding_upper,
         collision=None if found.collision is None else _collision(found.collision),
@@ -106,7 +106,7 @@ def _shown(filler: Placed, demands: Demands, found: Window) -> WindowAnswer:
     )
 
 
-def _limit(asked: LimitAsked, where: str) -> UpperLimit:
+def limit_of(asked: LimitAsked, where: str) -> UpperLimit:
     """A limit given or looked up; InvalidInput unless it is exactly one of both."""
     if (asked.limit_c is None) is (asked.known is None):
         both = asked.known is not None
@@ -122,7 +122,8 @@ def _limit(asked: LimitAsked, where: str) -> UpperLimit:
     return UpperLimit(asked.name, known.limit_c, asked.margin_c, known)
 
 
-def _terms(terms: Iterable[Term]) -> list[TermShown]:
+def terms_shown(terms: Iterable[Term]) -> list[TermShown]:
+    """Terms as answered."""
     return [TermShown(name=t.name, value_c=t.value_c, reason=t.reason, parts=_parts(t.parts)) for t in terms]
 
 

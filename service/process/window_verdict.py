@@ -64,7 +64,7 @@ def judge(
         width_c = 0.0
         bounds = {term.name for term in upper if term.value_c <= lowest.value_c + SAME_C}
         for joint in joints:
-            share = _melting_at_its_bound(joint) if joint.name in bounds else 0.0
+            share = melting_at_its_bound(joint) if joint.name in bounds else 0.0
             if share > MELTS_AT_ONCE:
                 excluded = next(term for term in upper if term.name == joint.name)
                 return Verdict(
@@ -74,7 +74,7 @@ def judge(
     return Verdict(highest, lowest, parts, width_c, True, middle_c, None)
 
 
-def _melting_at_its_bound(joint: EarlierJoint) -> float:
+def melting_at_its_bound(joint: EarlierJoint) -> float:
     """What melts at once of a joint at the temperature that bounds it, as a share; 0 with a margin."""
     if joint.margin_c > 0.0:
         return 0.0
