@@ -56,6 +56,10 @@ def column(sample: Sample, overall: Floats, low_k: float, high_k: float) -> Colu
                 raise
             complete = False
             break
+        lowest_k, highest_k = states.temperatures_k[[0, -1]]
+        if after is not None and highest_k - lowest_k < NARROW_K and stretches:
+            here = stable(sample, overall, max(low_k, float(lowest_k) - BEYOND_K))
+            continue  # several changes in one: what lies between them is not told
         stretches.append(stretch_of(sample, states))
         if after is None:
             break
