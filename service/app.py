@@ -18,6 +18,7 @@ from service.middleware import Edge
 from service.openapi import DESCRIPTION, SUMMARY, TAGS, describe_errors
 from service.process.fillers import covered
 from service.routes import (
+    baths,
     diagrams,
     dissolution,
     equilibrium,
@@ -47,6 +48,7 @@ ROUTERS = (
     dissolution.router,
     profiles.router,
     steps.router,
+    baths.router,
     fillers.router,
     safety.router,
     health.router,

@@ -30,6 +30,7 @@ TAGS = [
         "name": "Checking runs",
         "description": "Recorded temperature profiles against the window and further limits.",
     },
+    {"name": "Baths", "description": "Solder baths and pots: limits, drift, what to draw off."},
     {
         "name": "Mixing",
         "description": "What becomes of a joint when alloys, finishes and base metals melt into each other.",
