@@ -55,7 +55,9 @@ def draw_diagram(
             break
         height = needed
     first, second = diagram.elements
-    way = "computed from an assessment" if diagram.kind == "parameters" else "drawn through points"
+    fitted = any(source.how == "own fit" for source in diagram.sources)
+    computed = "computed with parameters fitted by this project" if fitted else "computed from an assessment"
+    way = computed if diagram.kind == "parameters" else "drawn through points"
     subtitle = f"phase diagram in equilibrium, {way}, edition {diagram.edition}"
     sheet = Sheet(f"{first}–{second}", subtitle, origin_lines(diagram), caution, height)
     picture.draw(sheet.plot())
