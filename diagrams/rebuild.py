@@ -1,6 +1,7 @@
-"""Rebuilds every stored diagram from its parameters or points: `python -m diagrams.rebuild [ID …]`."""
+"""Rebuilds stored diagrams, then sections, from what describes them: `python -m diagrams.rebuild [ID …]`."""
 
 import sys
+from collections.abc import Callable
 from concurrent.futures import ProcessPoolExecutor
 from pathlib import Path
 
@@ -10,6 +11,7 @@ from diagrams.files.points import point_ids, read_points
 from diagrams.files.store import FOLDER, to_text
 from diagrams.from_parameters import diagram_from_parameters
 from diagrams.from_points import diagram_from_points
+from diagrams.sections import shelf, store
 
 
 def buildable_ids() -> tuple[str, ...]:
@@ -30,14 +32,22 @@ def build_text(diagram_id: str) -> str:
 
 
 def main(ids: list[str]) -> None:
-    """Rebuild the named diagrams, or all."""
-    wanted = ids or list(buildable_ids())
-    folder = Path(str(FOLDER))
+    """Rebuild the named diagrams and sections, or all."""
+    diagrams = [i for i in buildable_ids() if i in ids or not ids]
+    sections = [name for name in shelf.lines() if name in ids or not ids]
+    unknown = [i for i in ids if i not in diagrams and i not in sections]
+    if unknown:
+        sys.exit(f"Nothing stored is called {', '.join(unknown)}.")
+    _write(Path(str(FOLDER)), diagrams, build_text)
+    _write(Path(str(store.FOLDER)), sections, shelf.build_text)
+
+
+def _write(folder: Path, names: list[str], text_of: Callable[[str], str]) -> None:
     folder.mkdir(parents=True, exist_ok=True)
     with ProcessPoolExecutor() as pool:
-        for diagram_id, text in zip(wanted, pool.map(build_text, wanted), strict=True):
-            (folder / f"{diagram_id}.json").write_text(text, encoding="utf-8")
-            sys.stdout.write(f"{diagram_id}: {len(text.splitlines())} lines\n")
+        for name, text in zip(names, pool.map(text_of, names), strict=True):
+            (folder / f"{name}.json").write_text(text, encoding="utf-8")
+            sys.stdout.write(f"{name}: {len(text.splitlines())} lines\n")
 
 
 if __name__ == "__main__":
