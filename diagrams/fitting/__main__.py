@@ -8,17 +8,22 @@ from pathlib import Path
 from diagrams.files import assessments
 from diagrams.fitting.fit import Fit, Outcome, fit_ids, fitted_document, read_fit, run_fit
 from diagrams.fitting.layout import parameter_text
+from diagrams.fitting.systems import fitted_system, read_system_fit, run_system_fit, system_fit_ids
 from diagrams.fitting.targets import Point
+from diagrams.many import reading
 
 
 def main(arguments: list[str]) -> int:
     """Run the fits named; 0 if every stored file equals its fit (after writing, if asked), else 1."""
     parser = argparse.ArgumentParser(prog="python -m diagrams.fitting", description=__doc__)
-    parser.add_argument("id", nargs="+", choices=fit_ids())
+    parser.add_argument("id", nargs="+", choices=[*fit_ids(), *system_fit_ids()])
     parser.add_argument("--write", action="store_true", help="store the coefficients in the parameter file")
     options = parser.parse_args(arguments)
     same = True
     for diagram_id in options.id:
+        if diagram_id in system_fit_ids():
+            same = _system(diagram_id, options.write) and same
+            continue
         path = Path(str(assessments.FOLDER)) / f"{diagram_id}.json"
         stored = path.read_text(encoding="utf-8")
         fit = read_fit(diagram_id)
@@ -32,6 +37,25 @@ def main(arguments: list[str]) -> int:
             sys.stdout.write(f"{diagram_id}: the stored file differs from this fit\n")
             same = False
     return 0 if same else 1
+
+
+def _system(system_id: str, write: bool) -> bool:
+    """Repeat the fit of a system of many elements, which takes some minutes; whether the file equals it."""
+    path = Path(str(reading.FOLDER)) / f"{system_id}.json"
+    document = json.loads(path.read_text(encoding="utf-8"))
+    fit = read_system_fit(system_id)
+    found = run_system_fit(fit, document)
+    new = fitted_system(fit, document, found)
+    for term, value in zip(fit.terms, found, strict=True):
+        sys.stdout.write(f"  {'-'.join(term.elements)} {term.model} {term.corner}: {value}\n")
+    for reached in new["reached"]:
+        sys.stdout.write(f"  {reached['name']}: before {reached['before_c']}, after {reached['after_c']}\n")
+    if write:
+        path.write_text(parameter_text(new), encoding="utf-8", newline="\n")
+    elif new != document:
+        sys.stdout.write(f"{system_id}: the stored file differs from this fit\n")
+        return False
+    return True
 
 
 def _report(fit: Fit, outcome: Outcome) -> str:

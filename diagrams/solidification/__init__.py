@@ -1,0 +1,1 @@
+"""How alloys freeze: at equilibrium, and without diffusion in the solid."""
