@@ -19,7 +19,7 @@ SHORTEST_C = 0.01
 MOST_FROZEN = 0.08  # of the liquid, in one step
 ROUNDS = 3  # of the correction within a step
 GONE = 1e-9  # share of the alloy that counts as no liquid
-FIRST_C = 1e-6  # how closely the liquidus is found
+FIRST_C = 1e-3  # under the liquidus, where the first solid is looked at
 
 
 @dataclass(frozen=True, eq=False)
@@ -67,7 +67,8 @@ def frozen(data: Freezing, w: Floats, liquidus_c: float, least: float = 1e-6) ->
     steps = [Step(liquidus_c, 1.0, {})]
     masses: dict[str, float] = {}
     elements: dict[str, Floats] = {}
-    here = _Here(liquidus_c, 1.0, w / w.sum(), {})
+    first = [] if liquidus_c - FIRST_C < lowest_c else data.at(w / w.sum(), liquidus_c - FIRST_C)
+    here = _Here(liquidus_c, 1.0, w / w.sum(), {p.name: p.w for p in first if not p.liquid})
     stride = data.step_c
     while here.liquid > least and here.temperature_c > lowest_c + SHORTEST_C:
         stride = min(stride, here.temperature_c - lowest_c)
