@@ -30,6 +30,7 @@ from service.routes import (
     mixtures,
     profiles,
     safety,
+    solidification,
     steps,
     window,
 )
@@ -42,6 +43,7 @@ ROUTERS = (
     figures.router,
     equilibrium.router,
     melting.router,
+    solidification.router,
     window.router,
     known_limits.router,
     mixtures.router,

@@ -96,9 +96,10 @@ def test_a_further_limit_never_helps(ask):
 
 def test_hold_still_and_times_by_hand(ask):
     found = check(ask, RUN)
-    solidus = found["levels"]["hold_still_c"]
+    solidus, frozen = found["levels"]["solidus_c"], found["levels"]["hold_still_c"]
+    assert frozen == pytest.approx(183.0, abs=0.02)
     from_s = 140 + 35 * (solidus - 161) / (212 - 161)
-    to_s = 190 + 50 * max((213 - solidus) / (213 - 120), (209 - solidus) / (209 - 124))
+    to_s = 190 + 50 * max((213 - frozen) / (213 - 120), (209 - frozen) / (209 - 124))
     assert found["hold_still_from_s"] == pytest.approx(from_s)
     assert found["hold_still_s"] == pytest.approx(to_s - from_s)
     assert found["peak_spread_c"] == pytest.approx(4.0)

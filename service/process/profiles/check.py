@@ -12,6 +12,7 @@ from service.process.profiles.judge import Judged, Sensor, judge
 from service.process.profiles.recording import Mended, Recording, traces_of
 from service.process.profiles.standards import StandardProfile
 from service.process.profiles.suspicion import check_unit, dead_sensors
+from service.process.solidification import hold_still_c
 from service.process.window import Demands, Window, find_window
 from service.process.window_answer import demands_of as window_demands_of
 from service.process.window_terms import EarlierJoint, remelting_term
@@ -30,6 +31,7 @@ class Run:
     window: Window | None
     levels: Levels
     hold_still_c: float
+    hold_still_by: str
     judged: Judged
     mended: tuple[Mended, ...]
     standard: StandardProfile | None
@@ -66,16 +68,20 @@ def checked_run(question: ProfileQuestion) -> Run:
             remedy='Send at least one record with "on": "joint".',
         )
     curve = filler.melter.curve
+    with about(filler, "alloy"):
+        frozen_c, frozen_by = hold_still_c(filler, solidus.safe_low)
     judged = judge(
         sensors,
         limits,
         levels,
         bounds,
-        solidus.safe_low,
+        frozen_c,
         None if curve is None else curve.points,
         question.limits.peak_spread_c,
     )
-    return Run(filler, demands, bounds, window, levels, solidus.safe_low, judged, recording.mended, standard)
+    return Run(
+        filler, demands, bounds, window, levels, frozen_c, frozen_by, judged, recording.mended, standard
+    )
 
 
 def _with_earlier(given: Bounds, demands: Demands) -> Bounds:

@@ -45,8 +45,7 @@ def profile_of(question: ProfileQuestion) -> ProfileAnswer:
             liquidus_c=run.levels.liquidus_c,
             target_c=run.levels.target_c,
             hold_still_c=run.hold_still_c,
-            hold_still_by="solidus at equilibrium, at the least favourable composition in tolerance; after "
-            "quick cooling the last liquid freezes lower, which POST /v1/solidification tells",
+            hold_still_by=run.hold_still_by,
         ),
         sensors=[_sensor(sensor) for sensor in judged.sensors],
         run_limits=_checks(judged.run_checks),
