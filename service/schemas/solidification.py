@@ -76,8 +76,8 @@ class SolidificationAnswer(Answer):
     )
     solids: list[SolidTotal] = Field(description="In the order in which they begin to form.")
     last_liquid_wt: dict[str, float] = Field(
-        description="Composition of the last liquid without diffusion, mass percent: what melts first when the "
-        "joint is heated again."
+        description="Composition of the last liquid without diffusion, mass percent: what melts first when "
+        "the joint is heated again."
     )
     unfrozen: float = Field(
         description="Share still liquid without diffusion at the lowest temperature of the data; else 0."
