@@ -88,7 +88,12 @@ def create_app(settings: Settings | None = None, readiness: Readiness = load_all
         lifespan=load_before_serving,
     )
     app.state.readiness = readiness
-    app.add_middleware(Edge, max_body_bytes=settings.max_body_bytes, root_path=settings.root_path)
+    app.add_middleware(
+        Edge,
+        max_body_bytes=settings.max_body_bytes,
+        root_path=settings.root_path,
+        larger=dict.fromkeys(profiles.ADDRESSES, settings.max_recording_bytes),
+    )
     problems.install(app)
     pages = (docs_page.router, docs_page.docs_router) if settings.docs else (docs_page.router,)
     for router in (*ROUTERS, *pages):

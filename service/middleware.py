@@ -5,7 +5,8 @@ import logging
 import os
 import re
 import time
-from collections.abc import MutableMapping
+from collections.abc import Mapping, MutableMapping
+from types import MappingProxyType
 from typing import Any
 
 import anyio
@@ -38,15 +39,24 @@ _POLICY_PAGE = (
 _POLICY_FIGURE = b"default-src 'none'; style-src 'unsafe-inline'; sandbox"
 _POLICY_DATA = b"default-src 'none'; frame-ancestors 'none'"
 _KEPT_ON_304 = frozenset({b"cache-control", b"content-location", b"etag", b"link", b"vary"})
+NOTHING_LARGER: Mapping[str, int] = MappingProxyType({})
 
 
 class Edge:
     """Pure ASGI middleware; it stands outside all handlers, so that nothing leaves without its headers."""
 
-    def __init__(self, app: ASGIApp, max_body_bytes: int, root_path: str = "") -> None:
+    def __init__(
+        self,
+        app: ASGIApp,
+        max_body_bytes: int,
+        root_path: str = "",
+        larger: Mapping[str, int] = NOTHING_LARGER,
+    ) -> None:
+        """`larger` names paths that take larger bodies, with their bytes."""
         self.app = app
         self.max_body_bytes = max_body_bytes
         self.root_path = root_path
+        self.larger = larger
 
     async def __call__(self, scope: Scope, receive: Receive, send: Send) -> None:
         """Serve one request."""
@@ -62,12 +72,13 @@ class Edge:
         if asked.head:
             scope["method"] = "GET"  # answered as GET is, and sent without the body
         answer = _Answer(scope, send, asked)
+        most = self.larger.get(scope["path"].removeprefix(self.root_path), self.max_body_bytes)
         try:
             if asked.content_length is None:
-                receive = _counted(receive, self.max_body_bytes)
-            elif asked.content_length > self.max_body_bytes:
+                receive = _counted(receive, most)
+            elif asked.content_length > most:
                 await _discard(receive, 0 if asked.waits else asked.content_length)
-                raise _too_large(self.max_body_bytes)
+                raise _too_large(most)
             await self.app(scope, receive, answer.send)
         except Refusal as refusal:
             response = problem_response(scope, refusal.code, refusal.detail, headers=refusal.headers)

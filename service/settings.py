@@ -25,6 +25,8 @@ class Settings:
     trusted_proxies: str = "127.0.0.1"
     """Comma-separated addresses whose X-Forwarded-* headers are believed."""
     max_body_bytes: int = 16 * 1024 * 1024
+    max_recording_bytes: int = 256 * 1024 * 1024
+    """Of a recorded run: 64 sensors of 200 000 samples with times of their own."""
     docs: bool = True
     """Serve the page at /docs and the OpenAPI document."""
     access_log: bool = True
@@ -37,7 +39,7 @@ class Settings:
             raise SettingsError(f"port is {self.port}; it must be 0 (any free one) to 65535.")
         if self.root_path and (not self.root_path.startswith("/") or self.root_path.endswith("/")):
             raise SettingsError(f"root_path is {self.root_path!r}; write it like /meltband.")
-        for name in ("max_body_bytes", "keep_alive_s", "graceful_timeout_s"):
+        for name in ("max_body_bytes", "max_recording_bytes", "keep_alive_s", "graceful_timeout_s"):
             if getattr(self, name) < 1:
                 raise SettingsError(f"{name} is {getattr(self, name)}; it must be 1 or more.")
 

@@ -13,6 +13,7 @@ from service.schemas.profile_verdict import ProfileAnswer
 
 router = new_router("Checking runs", route_class=RecordingRoute)
 
+ADDRESSES = ("/v1/profile-checks", "/v1/profile-checks/figure")
 EXAMPLES = {
     "reflow": {
         "summary": "A board of the Ketterbeck works in its reflow oven, two joints and a relay (invented)",

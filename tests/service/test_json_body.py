@@ -1,3 +1,4 @@
+import json
 import math
 
 import pytest
@@ -105,3 +106,34 @@ def test_numbers_that_are_none_are_left_for_the_models_to_refuse_by_field():
     read = read_json(b'{"a": NaN, "b": 1e999, "c": -Infinity}')
     assert math.isnan(read["a"])
     assert (read["b"], read["c"]) == (math.inf, -math.inf)
+
+
+COLUMN = [0.1, -2.5e-3, 7, 1e300, 0.1 + 0.2] * 20_000
+
+
+def test_long_columns_are_read_as_ever():
+    body = json.dumps({"a": COLUMN, "b": [{"c": COLUMN, "d": [None, True, "x, [1, 2]"]}]}).encode()
+    read = read_json(body)
+    assert read == json.loads(body)
+    assert [type(v) for v in read["a"][:3]] == [float, float, int]
+
+
+@pytest.mark.parametrize(
+    ("text", "fault"),
+    [
+        ('{"a": %s, "a": 1}', DuplicateKey),
+        ('{"b": [{"c": %s, "c": %s}]}', DuplicateKey),
+        ('{"a": %s, "b": 1,}', UnreadableJson),
+        ('{"a": %s, "b": [1, 2}', UnreadableJson),
+        ('{"a": [1, 2,, 3], "b": %s}', UnreadableJson),
+        ('{"a": [01, 2], "b": %s}', UnreadableJson),
+    ],
+)
+def test_faults_beside_long_columns_are_found(text, fault):
+    with pytest.raises(fault):
+        read_json((text.replace("%s", json.dumps(COLUMN))).encode())
+
+
+def test_what_is_no_json_number_comes_through_for_the_models():
+    body = ('{"b": [NaN, Infinity, 1e999], "a": ' + json.dumps(COLUMN) + "}").encode()
+    assert str(read_json(body)["b"]) == "[nan, inf, inf]"

@@ -29,7 +29,10 @@ def liquid_along(trace: Trace, curve: Points) -> tuple[tuple[float, float], ...]
     """(s, fraction) along a record, as few points as are true to TRUE_TO between straight lines."""
     times, fractions = _everything(trace, curve)
     lasts = trace.end_s - trace.start_s
-    line = LineString(np.column_stack([(times - trace.start_s) / lasts, fractions])).simplify(TRUE_TO)
+    bends = np.ones(len(fractions), dtype=np.bool_)
+    bends[1:-1] = (fractions[1:-1] != fractions[:-2]) | (fractions[1:-1] != fractions[2:])
+    points = np.column_stack([(times[bends] - trace.start_s) / lasts, fractions[bends]])
+    line = LineString(points).simplify(TRUE_TO, preserve_topology=False)
     return tuple((trace.start_s + x * lasts, f) for x, f in line.coords)
 
 
