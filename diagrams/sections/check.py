@@ -13,6 +13,7 @@ AREA_TOLERANCE = 1e-9  # share of the frame's area left to rounding when faces a
 LEVEL_C = 0.06  # how far a border may lie from the temperature of an invariant that is said to be it
 STUB_C = 0.15  # an upright this short is a node that did not close to a point
 UPRIGHT = 1e-6  # percent
+NODE = 1e-4  # of the section's length: columns stand no nearer to a place where the sequence changes
 
 
 def check_section(section: Section) -> None:
@@ -72,7 +73,8 @@ def _neighbours(section: Section) -> list[str]:
             upright = east - west <= UPRIGHT and (
                 north - south <= STUB_C or any(abs(x - west) <= 1e-4 for x in section.compounds)
             )
-            if not (flat or upright):
+            node = east - west <= NODE * section.to_share_max and north - south <= STUB_C
+            if not (flat or upright or node):
                 faults.append(
                     f"{one.name} and {two.name} share a border from {west:g} % {south:g} °C to {east:g} % "
                     f"{north:g} °C but differ by more than one phase"

@@ -77,7 +77,13 @@ def _json(value: Any) -> str:
 
 
 def _words(region: Region) -> str:
-    head = {"phases": list(region.phases), "kinds": list(region.kinds), "models": list(region.models)}
+    head: dict[str, Any] = {
+        "phases": list(region.phases),
+        "kinds": list(region.kinds),
+        "models": list(region.models),
+    }
+    if region.polygon.interiors:  # a field all around another
+        head["holes"] = [[list(p) for p in ring.coords] for ring in region.polygon.interiors]
     return ", ".join(f"{_json(k)}: {_json(v)}" for k, v in head.items())
 
 
@@ -124,7 +130,12 @@ def _section(document: dict[str, Any]) -> Section:
         sources=tuple(Source(**s) for s in document["sources"]),
         notes=tuple(document["notes"]),
         regions=tuple(
-            Region(tuple(r["phases"]), tuple(r["kinds"]), tuple(r["models"]), shapely.Polygon(r["polygon"]))
+            Region(
+                tuple(r["phases"]),
+                tuple(r["kinds"]),
+                tuple(r["models"]),
+                shapely.Polygon(r["polygon"], r.get("holes", [])),
+            )
             for r in document["regions"]
         ),
         contours=tuple(Contour(liquid, tuple(found)) for liquid, found in lines.items()),

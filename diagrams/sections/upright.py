@@ -18,6 +18,7 @@ from diagrams.sections import section
 from diagrams.sections.line import Line
 from diagrams.units import celsius_to_kelvin, kelvin_to_celsius
 
+THIN_K = 0.01
 HEIGHTS = np.array(section.HEIGHTS)
 Sequence = tuple[tuple[int, ...], ...]
 
@@ -60,11 +61,12 @@ def upright(line: Line, to_share: float) -> Upright:
     if not found.complete:
         lowest = kelvin_to_celsius(found.stretches[0].low_k)
         raise NotConverged(f"at {to_share:g} % no set of solids can be proven below {lowest:.0f} °C")
-    parts = tuple(_part(line, found, stretch) for stretch in found.stretches)
-    return Upright(to_share, parts, low, high)
+    parts = [_part(line, found, stretch) for stretch in found.stretches]
+    return Upright(to_share, tuple(part for part in parts if part is not None), low, high)
 
 
-def _part(line: Line, found: Column, stretch: Stretch) -> Part:
+def _part(line: Line, found: Column, stretch: Stretch) -> Part | None:
+    """A stretch as a part; None for one too thin to be solved for anew: changes so near are one."""
     t = stretch.low_k + (stretch.high_k - stretch.low_k) * HEIGHTS
     t[-1] = stretch.high_k
     known = stretch.states.temperatures_k
@@ -72,6 +74,8 @@ def _part(line: Line, found: Column, stretch: Stretch) -> Part:
     start = in_order(stretch.states.take(nearest))
     states = solve(line.sample.system, found.overall, replace(start, temperatures_k=t))
     if not states.converged.all():
+        if stretch.high_k - stretch.low_k < THIN_K:
+            return None
         raise NotConverged(f"states between {stretch.low_k:.2f} and {stretch.high_k:.2f} K do not join")
     return Part(tuple(sorted(states.sets)), stretch.names, states, liquid_fraction(line.sample, states))
 
