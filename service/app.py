@@ -30,6 +30,7 @@ from service.routes import (
     mixtures,
     profiles,
     safety,
+    sections,
     solidification,
     steps,
     window,
@@ -41,6 +42,7 @@ from service.settings import Settings, settings_from
 ROUTERS = (
     diagrams.router,
     figures.router,
+    sections.router,
     equilibrium.router,
     melting.router,
     solidification.router,

@@ -46,7 +46,10 @@ KINDS: Mapping[str, Kind] = {
     ),
     "unknown-diagram": Kind(404, "Diagram unknown", "No diagram has this id; GET /v1/diagrams lists them."),
     "data-fault": Kind(500, "Stored data faulty", "Stored data failed their checks; the operator must act."),
-    "not-converged": Kind(500, "Computation gave up", "A computation did not reach its tolerance."),
+    "not-converged": Kind(
+        422, "No proven answer",
+        "No set of phases could be proven to be the stable one; none is given rather than a doubtful one.",
+    ),
     # what the service refuses
     "bad-request": Kind(400, "Bad request", "The request could not be understood."),
     "unreadable-body": Kind(400, "Body not readable", "The body is no UTF-8 JSON; the place is named."),

@@ -22,10 +22,10 @@ ID_LENGTH = 12
 def section_id(line: Line) -> str:
     """The id of a section: the same line in the same range on the same edition has the same."""
     content = {
-        "from": dict(line.from_wt),
-        "to": dict(line.to_wt),
-        "most": line.most,
-        "temperature_range_c": list(line.temperature_range_c),
+        "from": {el: float(wt) for el, wt in line.from_wt.items()},
+        "to": {el: float(wt) for el, wt in line.to_wt.items()},
+        "most": float(line.most),
+        "temperature_range_c": [float(t) for t in line.temperature_range_c],
         "data": line.place.file.id,
         "edition": line.place.file.edition,
     }

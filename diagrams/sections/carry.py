@@ -21,7 +21,7 @@ from diagrams.sections.upright import HEIGHTS, Part, Upright
 from diagrams.units import celsius_to_kelvin
 
 AT_CHANGE = 1e-6  # of RT and of moles: leeway at a change itself, where a phase just touches the plane
-PROVEN = [0, 4]  # of HEIGHTS
+PROVEN = [0, 7]  # of HEIGHTS
 SAME_LOG = 1e-4  # twins nearer than this in ln x are one
 
 

@@ -13,7 +13,7 @@ from diagrams.sources import Source
 
 # Relative heights within a stretch of one set of phases at which its liquid fraction is kept; closer
 # towards the top, where melting speeds up.
-HEIGHTS = (0.0, 0.2, 0.4, 0.58, 0.72, 0.83, 0.91, 0.96, 0.985, 0.996, 1.0)
+HEIGHTS = (0.0, 0.1, 0.2, 0.3, 0.4, 0.5, 0.58, 0.66, 0.74, 0.81, 0.87, 0.92, 0.96, 0.985, 0.996, 1.0)
 
 Point = tuple[float, float]  # mass percent of the second alloy, °C
 Liquids = tuple[float, ...]  # mass fractions at HEIGHTS; a single one where it is the same all through

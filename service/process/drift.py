@@ -7,10 +7,10 @@ memory: all days at which the limit lies within the confidence band of the line.
 import math
 from collections.abc import Sequence
 from dataclasses import dataclass
+from importlib import import_module
 from typing import Literal
 
 import numpy as np
-from scipy.stats import t as student
 
 CONFIDENCE = 0.95
 LEAST_POINTS = 3  # two always lie on a line: nothing would be known of the scatter
@@ -71,7 +71,7 @@ def meeting(drift: Drift | None, limit: float, today: float, *, upwards: bool = 
     missing = sign * (limit - drift.at(today))
     if missing <= 0.0:
         return Meeting("meets it already")
-    width = float(student.ppf(0.5 + CONFIDENCE / 2.0, drift.points - 2)) * drift.residual_sd
+    width = _student(drift.points - 2) * drift.residual_sd
     slope = sign * drift.slope
     if slope <= 0.0:
         return Meeting("no drift towards it", earliest=_band(drift, limit, today, width)[0])
@@ -80,6 +80,11 @@ def meeting(drift: Drift | None, limit: float, today: float, *, upwards: bool = 
         return Meeting("will meet it", day, day, day)
     earliest, latest = _band(drift, limit, today, width)
     return Meeting("will meet it", day, day if earliest is None else earliest, latest)
+
+
+def _student(degrees: int) -> float:
+    """Student's t within which CONFIDENCE lies; the library is large, so it is loaded when first needed."""
+    return float(import_module("scipy.special").stdtrit(degrees, 0.5 + CONFIDENCE / 2.0))
 
 
 def _band(drift: Drift, limit: float, today: float, width: float) -> tuple[float | None, float | None]:

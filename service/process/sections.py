@@ -1,0 +1,117 @@
+"""Sections: stored ones, and others computed once and kept by their content."""
+
+import threading
+from collections import OrderedDict
+from functools import lru_cache
+
+from diagrams.alloys import Alloy
+from diagrams.errors import InvalidInput, UnknownDiagram
+from diagrams.figure_style import PictureFormat
+from diagrams.sections.build import build_section, section_id
+from diagrams.sections.check import check_section
+from diagrams.sections.figure import draw_section
+from diagrams.sections.line import Line, line_between
+from diagrams.sections.section import Section
+from diagrams.sections.shelf import named, stored_sections
+from service.process.caution import caution_lines
+from service.schemas.alloy import AlloyAsked, alloy_of
+from service.schemas.base import within
+from service.schemas.sections import SectionQuestion
+
+MOST_KEPT = 32  # sections of about half a megabyte each
+MOST_ELEMENTS = 4  # beyond, a section takes a minute and more
+
+
+class _Kept:
+    """Computed sections by id, the longest unasked dropped first; one is computed at a time."""
+
+    def __init__(self) -> None:
+        self._lock = threading.Lock()
+        self._computing = threading.Lock()
+        self._sections: OrderedDict[str, Section] = OrderedDict()
+
+    def get(self, found_id: str) -> Section | None:
+        """The one with this id, stored or kept."""
+        stored = stored_sections().get(found_id)
+        if stored is not None:
+            return stored
+        with self._lock:
+            if found_id in self._sections:
+                self._sections.move_to_end(found_id)
+            return self._sections.get(found_id)
+
+    def made(self, line: Line, from_name: str, to_name: str) -> Section:
+        """The section of a line, computed if it is not there yet."""
+        key = section_id(line)
+        found = self.get(key)
+        if found is not None:
+            return found
+        with self._computing:
+            found = self.get(key)
+            if found is None:
+                found = build_section(line, key, from_name, to_name)
+                check_section(found)
+                with self._lock:
+                    self._sections[key] = found
+                    while len(self._sections) > MOST_KEPT:
+                        self._sections.popitem(last=False)
+        return found
+
+
+_kept = _Kept()
+
+
+def section_of(question: SectionQuestion) -> Section:
+    """The section asked for; raises InvalidInput, NotCovered, OutsideData, NotConverged naming the field."""
+    one, two = _alloy(question.from_alloy, "from_alloy"), _alloy(question.to_alloy, "to_alloy")
+    elements = {*one.composition_wt, *two.composition_wt}
+    if len(elements) > MOST_ELEMENTS:
+        raise InvalidInput(
+            f"A section of {len(elements)} elements would take a minute and more; {MOST_ELEMENTS} are most.",
+            field="to_alloy",
+            remedy="Leave out an element, or take a stored section (GET /v1/sections).",
+        )
+    asked = question.temperature_range_c
+    if asked is not None and asked[0] >= asked[1]:
+        raise InvalidInput(
+            f"{asked[0]:g} to {asked[1]:g} °C is no range.",
+            field="temperature_range_c.1",
+            remedy="Give the lowest temperature first, then the highest.",
+        )
+    line = line_between(
+        one.composition_wt,
+        two.composition_wt,
+        question.to_share_max,
+        None if asked is None else (asked[0], asked[1]),
+    )
+    return _kept.made(line, named(one), named(two))
+
+
+def known_section(found_id: str) -> Section:
+    """A stored section or one computed before; UnknownDiagram names `id`."""
+    found = _kept.get(found_id)
+    if found is None:
+        raise UnknownDiagram(
+            f"No section {found_id[:40]} is stored or still kept.",
+            field="id",
+            remedy="GET /v1/sections lists the stored ones; POST /v1/sections computes others.",
+        )
+    return found
+
+
+@lru_cache(maxsize=32)
+def section_picture(section: Section, form: PictureFormat) -> bytes:
+    """Its picture."""
+    return draw_section(section, caution_lines(section.elements), form)
+
+
+def _alloy(asked: AlloyAsked, where: str) -> Alloy:
+    with within(where):
+        form, value, tolerance, _ = asked.key
+        if tolerance:
+            raise InvalidInput(
+                "A section runs between two compositions; tolerances have no place in it.",
+                field="tolerance_wt",
+                remedy="Leave tolerance_wt out.",
+            )
+        return alloy_of(form, value, None)

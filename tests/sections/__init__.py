@@ -1,0 +1,1 @@
+"""Sections: against the minimiser, against stored diagrams, past the gate."""
