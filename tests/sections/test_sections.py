@@ -55,7 +55,7 @@ def test_stored_equals_rebuilt() -> None:
     assert shapely.hausdorff_distance(scaled(new), scaled(old)) < 2e-4
 
 
-@pytest.mark.parametrize("name", sorted(PROMISED - {"sn42bi58-to-sn63pb37"}))
+@pytest.mark.parametrize("name", sorted(PROMISED))
 def test_sections_agree_with_the_minimiser(name: str) -> None:
     """At random points: the liquid share everywhere, the phases away from borders."""
     section, (line, _, _) = called(name), line_of(name)
