@@ -11,6 +11,7 @@ from diagrams.sections.naming import Named
 from diagrams.sections.section import Point, Run, Station
 
 Edge = tuple[Point, Point]
+SLIVER = 1e-6  # percent times °C: no field is as small
 
 
 def regions_of(runs: tuple[Run, ...], named: list[list[list[Named]]]) -> tuple[list[Region], list[list[int]]]:
@@ -18,7 +19,13 @@ def regions_of(runs: tuple[Run, ...], named: list[list[list[Named]]]) -> tuple[l
 
     `named` gives the phases of every part. A field is called as its largest part is.
     """
-    faces = _faces(runs, named)
+    return regions_of_faces(runs, named, _faces(runs, named))
+
+
+def regions_of_faces(
+    runs: tuple[Run, ...], named: list[list[list[Named]]], faces: list[shapely.Polygon]
+) -> tuple[list[Region], list[list[int]]]:
+    """The same from faces that tile the frame; slivers without a part of their own join a neighbour."""
     tree = shapely.STRtree(faces)
     numbers: list[list[int]] = []
     largest: dict[int, tuple[float, list[Named]]] = {}
@@ -32,8 +39,13 @@ def regions_of(runs: tuple[Run, ...], named: list[list[list[Named]]]) -> tuple[l
                 largest[number] = area, phases
             row.append(number)
         numbers.append(row)
-    if set(range(len(faces))) - set(largest):
+    orphans = sorted(set(range(len(faces))) - set(largest))
+    if any(faces[k].area > SLIVER for k in orphans):
         raise NotConverged("a field of the section belongs to no column")
+    for k in reversed(orphans):  # between borders that meet in a node, a hair beside each other
+        faces = _merged(faces, k)
+    if orphans:
+        return regions_of_faces(runs, named, faces)
     regions = []
     for k, face in enumerate(faces):
         phases = largest[k][1]
@@ -43,6 +55,18 @@ def regions_of(runs: tuple[Run, ...], named: list[list[list[Named]]]) -> tuple[l
             )
         )
     return regions, numbers
+
+
+def _merged(faces: list[shapely.Polygon], number: int) -> list[shapely.Polygon]:
+    """The faces with one joined to the neighbour with which it shares the longest border."""
+    sliver, others = faces[number], faces[:number] + faces[number + 1 :]
+    shared = [shapely.length(shapely.intersection(sliver, face)) for face in others]
+    best = max(range(len(others)), key=lambda k: shared[k])
+    whole = shapely.coverage_union(sliver, others[best])
+    if not isinstance(whole, shapely.Polygon):
+        raise NotConverged("a sliver of the section touches no field along a border")
+    others[best] = shapely.normalize(whole)
+    return sorted(others, key=_lower_left)
 
 
 def _widest(run: Run, part: int) -> tuple[Point, float]:

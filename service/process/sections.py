@@ -2,9 +2,9 @@
 
 import threading
 from collections import OrderedDict
+from dataclasses import dataclass
 from functools import lru_cache
 
-from diagrams.alloys import Alloy
 from diagrams.errors import InvalidInput, UnknownDiagram
 from diagrams.figure_style import PictureFormat
 from diagrams.sections.build import build_section, section_id
@@ -14,12 +14,25 @@ from diagrams.sections.line import Line, line_between
 from diagrams.sections.section import Section
 from diagrams.sections.shelf import named, stored_sections
 from service.process.caution import caution_lines
-from service.schemas.alloy import AlloyAsked, alloy_of
+from service.schemas.alloy import AlloyAsked, Amounts, Form, alloy_of
 from service.schemas.base import within
 from service.schemas.sections import SectionQuestion
 
 MOST_KEPT = 32  # sections of about half a megabyte each
 MOST_ELEMENTS = 4  # beyond, a section takes a minute and more
+
+
+Key = tuple[Form, str | Amounts]
+
+
+@dataclass(frozen=True, eq=False)
+class Way:
+    """A line that was asked for, with the id of its section and the names of its ends."""
+
+    id: str
+    line: Line
+    from_name: str
+    to_name: str
 
 
 class _Kept:
@@ -40,19 +53,18 @@ class _Kept:
                 self._sections.move_to_end(found_id)
             return self._sections.get(found_id)
 
-    def made(self, line: Line, from_name: str, to_name: str) -> Section:
+    def made(self, way: Way) -> Section:
         """The section of a line, computed if it is not there yet."""
-        key = section_id(line)
-        found = self.get(key)
+        found = self.get(way.id)
         if found is not None:
             return found
         with self._computing:
-            found = self.get(key)
+            found = self.get(way.id)
             if found is None:
-                found = build_section(line, key, from_name, to_name)
+                found = build_section(way.line, way.id, way.from_name, way.to_name)
                 check_section(found)
                 with self._lock:
-                    self._sections[key] = found
+                    self._sections[way.id] = found
                     while len(self._sections) > MOST_KEPT:
                         self._sections.popitem(last=False)
         return found
@@ -63,14 +75,6 @@ _kept = _Kept()
 
 def section_of(question: SectionQuestion) -> Section:
     """The section asked for; raises InvalidInput, NotCovered, OutsideData, NotConverged naming the field."""
-    one, two = _alloy(question.from_alloy, "from_alloy"), _alloy(question.to_alloy, "to_alloy")
-    elements = {*one.composition_wt, *two.composition_wt}
-    if len(elements) > MOST_ELEMENTS:
-        raise InvalidInput(
-            f"A section of {len(elements)} elements would take a minute and more; {MOST_ELEMENTS} are most.",
-            field="to_alloy",
-            remedy="Leave out an element, or take a stored section (GET /v1/sections).",
-        )
     asked = question.temperature_range_c
     if asked is not None and asked[0] >= asked[1]:
         raise InvalidInput(
@@ -78,13 +82,26 @@ def section_of(question: SectionQuestion) -> Section:
             field="temperature_range_c.1",
             remedy="Give the lowest temperature first, then the highest.",
         )
-    line = line_between(
-        one.composition_wt,
-        two.composition_wt,
-        question.to_share_max,
-        None if asked is None else (asked[0], asked[1]),
-    )
-    return _kept.made(line, named(one), named(two))
+    one, two = _key(question.from_alloy, "from_alloy"), _key(question.to_alloy, "to_alloy")
+    way = _way(one, two, question.to_share_max, None if asked is None else (asked[0], asked[1]))
+    return _kept.made(way)
+
+
+@lru_cache(maxsize=256)
+def _way(one: Key, two: Key, most: float, range_c: tuple[float, float] | None) -> Way:
+    with within("from_alloy"):
+        start = alloy_of(*one, None)
+    with within("to_alloy"):
+        end = alloy_of(*two, None)
+    elements = {*start.composition_wt, *end.composition_wt}
+    if len(elements) > MOST_ELEMENTS:
+        raise InvalidInput(
+            f"A section of {len(elements)} elements would take a minute and more; {MOST_ELEMENTS} are most.",
+            field="to_alloy",
+            remedy="Leave out an element, or take a stored section (GET /v1/sections).",
+        )
+    line = line_between(start.composition_wt, end.composition_wt, most, range_c)
+    return Way(section_id(line), line, named(start), named(end))
 
 
 def known_section(found_id: str) -> Section:
@@ -105,7 +122,7 @@ def section_picture(section: Section, form: PictureFormat) -> bytes:
     return draw_section(section, caution_lines(section.elements), form)
 
 
-def _alloy(asked: AlloyAsked, where: str) -> Alloy:
+def _key(asked: AlloyAsked, where: str) -> Key:
     with within(where):
         form, value, tolerance, _ = asked.key
         if tolerance:
@@ -114,4 +131,4 @@ def _alloy(asked: AlloyAsked, where: str) -> Alloy:
                 field="tolerance_wt",
                 remedy="Leave tolerance_wt out.",
             )
-        return alloy_of(form, value, None)
+        return form, value

@@ -1,5 +1,7 @@
 """Sections as answered."""
 
+from functools import lru_cache
+
 from shapely import LinearRing, Polygon
 from shapely.geometry.polygon import orient
 
@@ -50,6 +52,12 @@ def section_shown(section: Section) -> SectionAnswer:
         notes=list(section.notes),
         safety=safety_for(section.elements),
     )
+
+
+@lru_cache(maxsize=64)
+def section_json(section: Section) -> bytes:
+    """The same as it goes over the wire: large, and asked for again and again."""
+    return section_shown(section).model_dump_json().encode()
 
 
 def sections_shown() -> SectionsAnswer:

@@ -7,12 +7,13 @@ from fastapi.responses import Response
 
 from diagrams.figure_style import MEDIA_TYPES
 from service.process.sections import known_section, section_of, section_picture
-from service.process.sections_answer import section_shown, sections_shown
+from service.process.sections_answer import section_json, sections_shown
 from service.routes.figures import PICTURE, FormatQuery
 from service.routes.strict import new_router
 from service.schemas.sections import SectionAnswer, SectionQuestion, SectionsAnswer
 
 router = new_router("Diagrams")
+JSON = "application/json"
 
 EXAMPLES = {
     "copper in SAC305": {
@@ -39,7 +40,7 @@ SectionId = Annotated[
         min_length=1,
         max_length=40,
         description="Id of a section, as `GET /v1/sections` or `POST /v1/sections` gives it.",
-        examples=["d6d1afcfb9ab"],
+        examples=["ad41fe44d559"],
     ),
 ]
 
@@ -50,20 +51,20 @@ def list_sections() -> SectionsAnswer:
     return sections_shown()
 
 
-@router.post("/sections", summary="A section between two alloys")
-def ask_section(question: Annotated[SectionQuestion, Body(openapi_examples=EXAMPLES)]) -> SectionAnswer:
+@router.post("/sections", summary="A section between two alloys", response_model=SectionAnswer)
+def ask_section(question: Annotated[SectionQuestion, Body(openapi_examples=EXAMPLES)]) -> Response:
     """Give all mixtures of two alloys against temperature: fields as polygons, lines of equal liquid share.
 
     x is the mass percent of `to_alloy`, y °C. Stored sections are answered at once; others are computed,
     which takes some seconds, and kept for a while: their picture is at `figure`.
     """
-    return section_shown(section_of(question))
+    return Response(section_json(section_of(question)), media_type=JSON)
 
 
-@router.get("/sections/{id}", summary="One section, by its id")
-def get_section(id: SectionId) -> SectionAnswer:  # noqa: A002  # the name in the address
+@router.get("/sections/{id}", summary="One section, by its id", response_model=SectionAnswer)
+def get_section(id: SectionId) -> Response:  # noqa: A002  # the name in the address
     """Give a stored section, or one computed before and still kept."""
-    return section_shown(known_section(id))
+    return Response(section_json(known_section(id)), media_type=JSON)
 
 
 @router.get(

@@ -1,18 +1,28 @@
 """Prints every goal with what was measured: `python -m tests.benchmarks`."""
 
+import io
 import subprocess
 import sys
 import time
+from collections.abc import Callable
 from concurrent.futures import ProcessPoolExecutor
 
 import numpy as np
+from fastapi import FastAPI
 
+from diagrams.alloys import parse_alloy
 from diagrams.equilibrium import Isotherm
 from diagrams.files.assessments import read_assessment
 from diagrams.files.catalog import catalog
+from diagrams.questions.by_minimisation import ByMinimisation
 from diagrams.questions.locate import locate
 from diagrams.questions.locate_many import locate_many
+from diagrams.questions.many_curve import follow
+from diagrams.questions.many_place import place_many
+from diagrams.questions.many_state import StateFinder
 from diagrams.rebuild import build_text, buildable_ids
+from diagrams.sections.build import build_section
+from diagrams.sections.line import line_between
 from diagrams.units import second_wt_to_x
 from service.app import create_app
 from service.routes.strict import StrictRoute
@@ -72,9 +82,7 @@ def say(what: str, measured: str, goal: str) -> None:
 
 def service() -> None:
     """Requests against an echo of the same application."""
-    app = create_app(Settings())
-    app.router.routes.insert(0, StrictRoute("/echo", echo, methods=["POST"]))
-    driver = Driver(app)
+    driver = Driver(app_with_echo())
     floor = driver.post("/echo", ECHO)
     for name, work, calls in (
         ("POST /v1/equilibrium", driver.post("/v1/equilibrium", QUESTION), 200),
@@ -114,6 +122,85 @@ def library() -> None:
         f"{times:.0f} times ({minimised * 1e3:.2f} ms/{read * 1e6:.1f} us)",
         ">= 300 times",
     )
+
+
+def many() -> None:
+    """Alloys of many elements: a curve, a tolerance, a section new and cached, freezing."""
+    alloy = parse_alloy("Sn90Ag3Cu0.5Pb6.5")
+    finder = StateFinder(place_many(alloy), alloy.composition_wt)
+    finder.place.sample  # noqa: B018  # prepared once a service
+    temperatures_c = np.linspace(150.0, 250.0, 300).tolist()
+
+    def whole() -> list[float]:
+        curve = follow(finder)
+        return [curve.liquid_fraction(t) for t in temperatures_c]
+
+    best = min(timed(whole) for _ in range(3))
+    say("melting curve of a four-element alloy", f"{best:.2f} s", "< 0.3 s (300 temperatures)")
+    sac = ByMinimisation(parse_alloy("SAC305"))
+    spans = timed(lambda: (sac.kept(0.0), sac.needed(1.0)))
+    say("SAC305 with tolerance, first time", f"{spans:.2f} s", "(none set)")
+    line = line_between({"Sn": 96.5, "Ag": 3.0, "Cu": 0.5}, {"Cu": 100.0}, 5.0)
+    line.sample  # noqa: B018  # likewise
+    built = timed(lambda: build_section(line, "x", "a", "b"))
+    say("a new section, SAC305 to 5 % copper", f"{built:.1f} s", "< 3 s")
+    driver = Driver(app_with_echo())
+    copper = {"composition_wt": {"Cu": 100}}
+    body = {"from_alloy": {"designation": "SAC305"}, "to_alloy": copper, "to_share_max": 5}
+    times, ours, base = ratio(driver.post("/v1/sections", body), driver.post("/echo", ECHO), 20, 200)
+    say(
+        "a cached section, POST /v1/sections",
+        f"{times:.1f} echoes ({ours * 1e6:.0f}/{base * 1e6:.0f} us)",
+        "<= 2.0 echoes",
+    )
+
+
+def profiles() -> None:
+    """Twelve sensors of 10 000 samples, against numpy reading the numbers; growth with samples."""
+    driver = Driver(app_with_echo())
+    seconds = {}
+    for samples in (10_000, 20_000, 40_000):
+        times_s = np.linspace(0.0, 300.0, samples).round(4)
+        run = np.interp(times_s, [0, 50, 140, 175, 190, 240, 300], [24, 118, 161, 212, 213, 120, 55]).round(2)
+        columns = [(run + 0.01 * k).tolist() for k in range(12)]
+        body = {
+            "alloy": {"designation": "Sn63Pb37"},
+            "superheat_c": 15,
+            "upper_limits": [{"name": "part", "limit_c": 235}],
+            "limits": {"rise_c_per_s": {"at_most": 3}, "time_above_solidus_s": {"at_least": 30}},
+            "time_s": times_s.tolist(),
+            "sensors": [{"name": f"s{k}", "temperature_c": column} for k, column in enumerate(columns)],
+        }
+        text = "\n".join(",".join(map(str, row)) for row in zip(times_s.tolist(), *columns, strict=True))
+        times, ours, base = ratio(
+            driver.post("/v1/profile-checks", body),
+            lambda text=text: np.loadtxt(io.StringIO(text), delimiter=","),
+            3,
+            3,
+            rounds=5,
+        )
+        seconds[samples] = ours
+        if samples == 10_000:
+            say(
+                "12 sensors of 10 000 samples judged",
+                f"{ours * 1e3:.0f} ms, {times:.1f} readings ({base * 1e3:.0f} ms)",
+                "<= 60 ms, <= 10 readings",
+            )
+    say("the same with four times the samples", f"{seconds[40_000] / seconds[10_000]:.1f} times", "4 times")
+
+
+def timed(work: Callable[[], object]) -> float:
+    """CPU seconds of one call."""
+    begin = time.process_time()
+    work()
+    return time.process_time() - begin
+
+
+def app_with_echo() -> FastAPI:
+    """The application with the floor in it."""
+    app = create_app(Settings())
+    app.router.routes.insert(0, StrictRoute("/echo", echo, methods=["POST"]))
+    return app
 
 
 def start() -> None:
@@ -162,5 +249,5 @@ def rebuild() -> None:
 
 
 if __name__ == "__main__":
-    for part in (library, service, start, rebuild):
+    for part in (library, service, many, profiles, start, rebuild):
         part()

@@ -1,11 +1,13 @@
 """Computed against tabulated melting ranges: every covered filler of three and more elements."""
 
+import re
+
 import numpy as np
 import pytest
 
 from diagrams.alloys import alloy_from_designation
-from diagrams.errors import NotCovered, OutsideData
-from diagrams.fillers import fillers
+from diagrams.errors import NotCovered, OutsideData, UnknownAlloy
+from diagrams.fillers import fillers, find_filler
 from diagrams.fitting.systems import read_system_fit, system_fit_ids
 from diagrams.many.reading import read_system, system_ids
 from diagrams.questions.many_curve import follow
@@ -71,9 +73,17 @@ def test_rows_that_no_fit_used_stand_apart() -> None:
     Half of them are printed without the last crystals of a compound, see the known differences.
     """
     used = {t.filler for k in system_fit_ids() for t in read_system_fit(k).targets if t.filler}
-    told = " ".join(fact for k in system_ids() for fact in read_system(k).fitted_to)
-    free = [name for name in ROWS if name not in used and f"range of {name} " not in told]
+    facts = [fact for k in system_ids() for fact in read_system(k).fitted_to]
+    called = [match[1] for fact in facts if (match := re.match(r"melting range of (.+?) \(", fact))]
+    for name in called:
+        try:
+            used.add(find_filler(name).name)
+        except UnknownAlloy:
+            continue  # a print that the table does not hold
+    free = [name for name in ROWS if name not in used]
     solders = np.array([[abs(ROWS[n][1]), abs(ROWS[n][2])] for n in free if ROWS[n][0] == "solder"])
     assert len(solders) >= 15
     assert np.median(solders[:, 0]) <= 1.0
     assert np.median(solders[:, 1]) <= 6.0
+    # of the brazes nearly every row went into a fit: their medians check little
+    assert {name for name in free if ROWS[name][0] == "braze"} <= {"CuP 286"}

@@ -80,6 +80,19 @@ def test_sections_agree_with_the_minimiser(name: str) -> None:
     assert told > 15
 
 
+def test_the_low_eutectic_of_bismuth_lead_and_tin_shows() -> None:
+    section = called("sn42bi58-to-sn63pb37")
+    melting = [
+        i for i in section.invariants if "L" in i.over.split(" + ") and "L" not in i.under.split(" + ")
+    ]
+    lowest = min(melting, key=lambda i: i.temperature_c)
+    assert 95.0 <= lowest.temperature_c <= 98.0  # common practice
+    assert lowest.to_share - lowest.from_share > 20.0  # it shows over a good part of the mix
+    middle = 0.5 * (lowest.from_share + lowest.to_share)
+    assert section.state(middle, lowest.temperature_c - 0.5)[1] == 0.0
+    assert section.state(middle, lowest.temperature_c + 0.5)[1] > 0.0
+
+
 def test_a_section_of_two_metals_is_their_stored_diagram() -> None:
     section = build_section(line_between({"Pb": 100.0}, {"Sn": 100.0}, 100.0, (25.0, 400.0)), "x", "Pb", "Sn")
     check_section(section)
