@@ -1,5 +1,7 @@
 """What can go wrong in the metallurgy, each kind with the field it is about and the remedy."""
 
+TRY_BESIDE = "Ask for a slightly different composition or temperature, and report this one."
+
 
 class DiagramsError(Exception):
     """Base of all errors raised on purpose; the text is written for the person asking.
@@ -61,3 +63,6 @@ class NotConverged(DiagramsError):
     """A computation that did not reach its tolerance."""
 
     code = "not-converged"
+
+    def __init__(self, message: str, *, field: str = "alloy", remedy: str = TRY_BESIDE) -> None:
+        super().__init__(message, field=field, remedy=remedy)

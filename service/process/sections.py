@@ -5,7 +5,7 @@ from collections import OrderedDict
 from dataclasses import dataclass
 from functools import lru_cache
 
-from diagrams.errors import InvalidInput, UnknownDiagram
+from diagrams.errors import InvalidInput, NotConverged, UnknownDiagram
 from diagrams.figure_style import PictureFormat
 from diagrams.sections.build import build_section, section_id
 from diagrams.sections.check import check_section
@@ -61,13 +61,22 @@ class _Kept:
         with self._computing:
             found = self.get(way.id)
             if found is None:
-                found = build_section(way.line, way.id, way.from_name, way.to_name)
+                found = _built(way)
                 check_section(found)
                 with self._lock:
                     self._sections[way.id] = found
                     while len(self._sections) > MOST_KEPT:
                         self._sections.popitem(last=False)
         return found
+
+
+def _built(way: Way) -> Section:
+    try:
+        return build_section(way.line, way.id, way.from_name, way.to_name)
+    except NotConverged as error:
+        error.field = "to_alloy"
+        error.remedy = "Ask for a shorter line or a narrower range of temperature, and report this one."
+        raise
 
 
 _kept = _Kept()

@@ -13,7 +13,7 @@ from starlette.types import Message
 
 from service.problems import Refusal, field_error
 from service.process.profiles.from_table import body_of
-from service.routes.strict import PARSED, StrictRoute, refuse_odd_parameters
+from service.routes.strict import PARSED, StrictRoute, refuse_odd_parameters, refuse_other_bodies
 from service.schemas.profile_address import ProfileAddress
 
 TABLE = "text/csv"
@@ -23,6 +23,8 @@ ALSO_WITH_JSON = frozenset({"format"})
 
 class RecordingRoute(StrictRoute):
     """A route whose JSON body may come as a table instead."""
+
+    also_takes = TABLE
 
     def get_route_handler(self) -> Callable[[Request], Coroutine[Any, Any, Response]]:
         """Turn a table into the body it stands for, then go on as ever."""
@@ -34,6 +36,7 @@ class RecordingRoute(StrictRoute):
             if kind != TABLE:
                 _refuse_parameters_beside_json(request)
                 return await handler(request)
+            await refuse_other_bodies(request, TABLE)
             table = await _table_of(request)
             request = _with_address_of(request, table)
             refuse_odd_parameters(request, known)

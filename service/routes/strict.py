@@ -43,6 +43,8 @@ class StrictRequest(Request):
 class StrictRoute(APIRoute):
     """A route that refuses what it does not know instead of passing over it."""
 
+    also_takes: str | None = None  # a media type beside JSON
+
     def get_route_handler(self) -> Callable[[Request], Coroutine[Any, Any, Response]]:
         """Wrap the framework's handler with the checks."""
         handler = super().get_route_handler()
@@ -54,7 +56,7 @@ class StrictRoute(APIRoute):
             if request.scope["query_string"]:
                 refuse_odd_parameters(request, known)
             if takes_json:
-                await refuse_other_bodies(request)
+                await refuse_other_bodies(request, self.also_takes)
             return await handler(request)
 
         return strict_handler
@@ -88,8 +90,12 @@ def refuse_odd_parameters(request: Request, known: Mapping[str, Kind | None]) ->
         raise Refusal("invalid-request", counted(errors[0].detail, len(errors)), shown)
 
 
-async def refuse_other_bodies(request: Request) -> None:
-    """Refuse a body that is not labelled as plain JSON in UTF-8, before anything tries to read it."""
+async def refuse_other_bodies(request: Request, also: str | None = None) -> None:
+    """Refuse a body that is not labelled as plain JSON in UTF-8, before anything tries to read it.
+
+    `also` is another media type that is taken.
+    """
+    wanted = "Content-Type: application/json" + (f" or {also}" if also else "")
     kind, _, rest = request.headers.get("content-type", "").partition(";")
     kind = kind.strip().lower()
     coding = request.headers.get("content-encoding", "identity").strip().lower()
@@ -99,15 +105,15 @@ async def refuse_other_bodies(request: Request) -> None:
     if (charset := _charset(rest)) not in _UTF_8:
         raise Refusal(
             "unsupported-media-type",
-            f"The body is labelled as {charset}; send UTF-8, with Content-Type: application/json.",
+            f"The body is labelled as {charset}; send UTF-8, with {wanted}.",
         )
     # an error answer takes its cautions from what was asked about
     request.scope["meltband.body"] = body = await request.body()
-    if kind == "application/json" or (kind.startswith("application/") and kind.endswith("+json")):
+    if kind in ("application/json", also) or (kind.startswith("application/") and kind.endswith("+json")):
         return
     if body:
         sent = f"The body is labelled “{kind}”" if kind else "The body has no Content-Type"
-        raise Refusal("unsupported-media-type", f"{sent}; send it with Content-Type: application/json.")
+        raise Refusal("unsupported-media-type", f"{sent}; send it with {wanted}.")
 
 
 def _charset(parameters: str) -> str:

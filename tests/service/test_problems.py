@@ -212,7 +212,9 @@ def test_errors_of_the_metallurgy_name_field_and_remedy():
     ]
     found = refused(provoke("GET", "/v1/twin?temperature_c=1&fault=diagram"), 404, "unknown-diagram")
     assert found["errors"][0]["parameter"] == "id"
-    refused(provoke("GET", "/v1/twin?temperature_c=1&fault=converge"), 500, "not-converged")
+    found = refused(provoke("GET", "/v1/twin?temperature_c=1&fault=converge"), 422, "not-converged")
+    assert found["errors"][0]["field"] == "alloy"
+    assert "slightly different" in found["errors"][0]["remedy"]
 
 
 @pytest.mark.parametrize("fault", ["secret", "nan"])

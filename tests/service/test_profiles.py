@@ -147,6 +147,13 @@ def test_tables_that_are_refused(ask, query, table, field):
     assert [error["field"] for error in answer.json()["errors"]] == [field]
 
 
+@pytest.mark.parametrize("kind", ["text/plain", "text/csv; charset=latin-1", "application/xml"])
+def test_other_bodies_are_refused_with_what_is_taken(ask, kind):
+    answer = ask("POST", "/v1/profile-checks", content=TABLE_EXAMPLE.encode(), headers={"content-type": kind})
+    assert answer.status_code == 415
+    assert "text/csv" in answer.json()["detail"]
+
+
 def test_parameters_beside_json_are_refused(ask):
     answer = ask("POST", "/v1/profile-checks?alloy=sn63pb37", json=RUN)
     assert answer.status_code == 422
