@@ -46,7 +46,9 @@ def runs_of(line: Line, columns: list[Upright]) -> tuple[tuple[Run, ...], list[l
 
 
 def _rounded(values: list[float]) -> list[float]:
-    return [round(t, DECIMALS_C) for t in values]
+    """Levels between the ends of the frame, which stay as they were asked for."""
+    low, high = values[0], values[-1]
+    return [low, *(min(max(round(t, DECIMALS_C), low), high) for t in values[1:-1]), high]
 
 
 def _meet(one: Upright, two: Upright) -> tuple[list[float], list[float]]:

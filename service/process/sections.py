@@ -5,7 +5,7 @@ from collections import OrderedDict
 from dataclasses import dataclass
 from functools import lru_cache
 
-from diagrams.errors import InvalidInput, NotConverged, UnknownDiagram
+from diagrams.errors import DataFault, InvalidInput, NotConverged, UnknownDiagram
 from diagrams.figure_style import PictureFormat
 from diagrams.sections.build import build_section, section_id
 from diagrams.sections.check import check_section
@@ -19,6 +19,7 @@ from service.schemas.base import within
 from service.schemas.sections import SectionQuestion
 
 MOST_KEPT = 32  # sections of about half a megabyte each
+MOST_TOLD = 300  # characters of what went wrong
 MOST_ELEMENTS = 4  # beyond, a section takes a minute and more
 
 
@@ -62,7 +63,6 @@ class _Kept:
             found = self.get(way.id)
             if found is None:
                 found = _built(way)
-                check_section(found)
                 with self._lock:
                     self._sections[way.id] = found
                     while len(self._sections) > MOST_KEPT:
@@ -71,12 +71,15 @@ class _Kept:
 
 
 def _built(way: Way) -> Section:
+    """Computed and past the gate; NotConverged where one of both fails."""
     try:
-        return build_section(way.line, way.id, way.from_name, way.to_name)
-    except NotConverged as error:
-        error.field = "to_alloy"
-        error.remedy = "Ask for a shorter line or a narrower range of temperature, and report this one."
-        raise
+        found = build_section(way.line, way.id, way.from_name, way.to_name)
+        check_section(found)
+    except (NotConverged, DataFault) as error:
+        remedy = "Ask for a shorter line or a narrower range of temperature, and report this one."
+        told = f"This section could not be proven: {error}"
+        raise NotConverged(told[:MOST_TOLD], field="to_alloy", remedy=remedy) from error
+    return found
 
 
 _kept = _Kept()

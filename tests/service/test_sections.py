@@ -57,6 +57,16 @@ def test_a_new_line_is_computed_tiles_its_frame_and_is_kept(ask):
     assert ask("GET", found["figure"]).status_code == 200
 
 
+def test_a_range_of_many_decimals_is_kept_to_the_last(ask):
+    odd = {"temperature_range_c": [171.2949998936884, 231.0000001], "to_share_max": 3.1415926535}
+    found = section(ask, PLAIN | odd)
+    assert found["temperature_range_c"] == odd["temperature_range_c"]
+    bounds = shapely.total_bounds(
+        [shapely.Polygon(r["geometry"]["coordinates"][0]) for r in found["regions"]]
+    )
+    assert bounds.tolist() == [0.0, 171.2949998936884, 3.1415926535, 231.0000001]
+
+
 @pytest.mark.parametrize(
     ("change", "field"),
     [
