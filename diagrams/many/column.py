@@ -20,7 +20,7 @@ from diagrams.many.stretch import Stretch, liquid_fraction, stacked, stretch_of
 from diagrams.many.tangent import deepest
 
 STRIDE_K = 4.0  # between temperatures at which a set of phases is proven
-AHEAD = 8  # so many at once
+AHEAD = 16  # so many at once
 BEYOND_K = 1e-4  # how far beyond a change the next set of phases is proven
 NARROW_K = 1e-6  # changes nearer than this are one
 MOST_CHANGES = 60

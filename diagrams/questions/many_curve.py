@@ -3,6 +3,7 @@
 Changes among solids alone, or in the liquid alone, leave no trace in the curve.
 """
 
+from bisect import bisect_right
 from itertools import pairwise
 
 from diagrams.errors import InvalidInput, OutsideData
@@ -23,6 +24,7 @@ class FollowedCurve:
 
     def __init__(self, points: Points, data_id: str, column: Column) -> None:
         self.points, self._data_id, self.column = points, data_id, column
+        self._temperatures_c = [t for t, _ in points]
 
     def change_at(self, temperature_c: float) -> Change | None:
         """The change of phases at a temperature, if there is one that can be looked for again."""
@@ -51,10 +53,11 @@ class FollowedCurve:
                 field="temperatures_c",
                 remedy=f"Ask between {low:g} and {high:g} °C.",
             )
-        for (t0, f0), (t1, f1) in reversed(list(pairwise(self.points))):
-            if t0 <= temperature_c and (t1 > t0 or temperature_c >= t1):
-                return f1 if t1 == t0 else f0 + (f1 - f0) * (temperature_c - t0) / (t1 - t0)
-        return self.points[0][1]
+        k = bisect_right(self._temperatures_c, temperature_c)  # after both points of a jump
+        if k == len(self.points):
+            return self.points[-1][1]
+        (t0, f0), (t1, f1) = self.points[k - 1 : k + 1]
+        return f0 + (f1 - f0) * (temperature_c - t0) / (t1 - t0)
 
     def first_exceeds(self, fraction: float) -> float:
         """Temperature up to which the fraction stays at or under `fraction` (0 ≤ fraction < 1)."""
