@@ -13,6 +13,7 @@ from pydantic.json_schema import models_json_schema
 from diagrams.errors import DataFault
 from diagrams.files.catalog import catalog
 from diagrams.fillers import FILLERS_EDITION
+from diagrams.sections.shelf import stored_sections
 from service import __version__, docs_page, problems
 from service.middleware import Edge
 from service.openapi import DESCRIPTION, SUMMARY, TAGS, describe_errors
@@ -69,6 +70,7 @@ NO_TELEMETRY: Any = {
 def load_all() -> Mapping[str, str]:
     """Load every stored set of data and return its edition; what is loaded stays loaded."""
     covered()  # places every filler on its diagram, so that no question waits for that
+    stored_sections()  # past their gate, or the service does not get ready
     return {"diagrams": catalog().edition, "fillers": FILLERS_EDITION, "safety": safety_edition()}
 
 
