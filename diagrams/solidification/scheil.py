@@ -126,13 +126,13 @@ def _step(data: Freezing, here: _Here, stride: float) -> _Taken:
         if not np.any(shift) or corrected.min() <= 0.0 or not any(p.liquid for p in parts):
             break
         better = data.near(corrected, temperature_c)
-        if better is None:
-            break
+        if better is None or all(p.liquid for p in better):
+            break  # the shifted composition lies on the other side of the liquidus
         parts = better
     liquids = [p for p in parts if p.liquid]
     solids = [p for p in parts if not p.liquid]
     left = sum(p.share for p in liquids)
-    liquid_w = _mean(liquids, left) if left > 0.0 else here.w
+    liquid_w = _mean(liquids, left) if left > 0.0 and solids else here.w
     # what froze is what is no longer liquid, element by element, so that nothing is lost
     lost = here.w - left * liquid_w
     formed = {}

@@ -75,7 +75,17 @@ def test_against_the_integral(name: str, diagram_id: str, second_wt: float, want
     assert step.liquid == pytest.approx(wanted, abs=5e-4)
 
 
-NAMES = ["Pb90Sn10", "Sn5Pb95", "Ag20Cu80", "Sn63Pb37", "SAC305", "Sn62Pb36Ag2", "Sn90Bi7.5Ag2.5", "BAg-5"]
+NAMES = [
+    "Pb90Sn10",
+    "Sn5Pb95",
+    "Ag20Cu80",
+    "Sn63Pb37",
+    "SAC305",
+    "Sn62Pb36Ag2",
+    "Sn90Bi7.5Ag2.5",
+    "BAg-5",
+    "Sn95Sb5",
+]
 
 
 @pytest.mark.parametrize("name", NAMES)
