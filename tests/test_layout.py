@@ -37,6 +37,7 @@ LAYERS = [
         "density",
     },
     {
+        "comparison",
         "files",
         "many",
         "sections",

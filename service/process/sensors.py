@@ -1,16 +1,56 @@
-"""Tolerances of thermocouples by standard, type and class, at a temperature."""
+"""What a sensor may read wrong: a stated tolerance, or a standard's by type and class of thermocouple."""
 
 import re
 from collections.abc import Mapping
 from dataclasses import dataclass
 from functools import cache
+from typing import Protocol
 
 from diagrams.errors import InvalidInput, OutsideData
-from diagrams.reference import reference_edition, reference_table
+from diagrams.reference import reference_edition, reference_guidance, reference_table
 from diagrams.sources import Source
+from service.safety import safety_for
+from service.schemas.source import reference_shown
+from service.schemas.uncertainty import SensorClassesAnswer, SensorClassShown, ToleranceAt
 
 TABLE = "sensor_tolerances.csv"
 FIELD = "sensor_class"
+STEP_C = 100
+_CLOSE_C = 1e-12
+
+
+class Sensor(Protocol):
+    """Whatever has a tolerance."""
+
+    def tolerance_c(self, at_c: float) -> float:
+        """How far a reading may lie off at a true temperature (°C), either way."""
+
+    @property
+    def told(self) -> str:
+        """Where the tolerance comes from, to be put in brackets; empty if it was stated."""
+
+
+@dataclass(frozen=True)
+class Stated:
+    """A sensor of which one tolerance is known, °C."""
+
+    stated_c: float
+    told: str = ""
+
+    def tolerance_c(self, at_c: float) -> float:
+        """The same everywhere."""
+        return self.stated_c
+
+
+def hottest_true_c(sensor: Sensor, reading_c: float) -> float:
+    """The highest true temperature (°C) at which a sensor may read this; OutsideData beyond its class.
+
+    A tolerance grows by less than a hundredth of the temperature: each round gains two digits.
+    """
+    true_c = reading_c + sensor.tolerance_c(reading_c)
+    while abs(true_c - (closer_c := reading_c + sensor.tolerance_c(true_c))) > _CLOSE_C * max(1.0, true_c):
+        true_c = closer_c
+    return closer_c
 
 
 @dataclass(frozen=True)
@@ -37,6 +77,11 @@ class SensorClass:
     ranges: tuple[_Range, ...]
     source: Source
     edition: str
+
+    @property
+    def told(self) -> str:
+        """Name, work, how it came here, edition of the table."""
+        return f"{self.name}: {self.source.text}, {self.source.how}; {self.edition}"
 
     def tolerance_c(self, at_c: float) -> float:
         """How far a reading may lie off at a temperature (°C), either way; OutsideData beyond the class."""
@@ -69,6 +114,16 @@ def sensor_classes() -> Mapping[str, SensorClass]:
     }
 
 
+def sensor_classes_shown() -> SensorClassesAnswer:
+    """All of them as answered."""
+    return SensorClassesAnswer(
+        sensor_classes=[_shown(sensor) for sensor in sensor_classes().values()],
+        edition=reference_edition(TABLE),
+        guidance=reference_guidance(TABLE),
+        safety=safety_for(()),
+    )
+
+
 def sensor_class(text: str) -> SensorClass:
     """The class of a name, whatever the case, spaces and hyphens; InvalidInput lists those there are."""
     found = {_key(name): sensor for name, sensor in sensor_classes().items()}.get(_key(text))
@@ -79,6 +134,20 @@ def sensor_class(text: str) -> SensorClass:
             remedy="Name one of: " + ", ".join(sensor_classes()) + ".",
         )
     return found
+
+
+def _shown(sensor: SensorClass) -> SensorClassShown:
+    low, high = sensor.ranges[0].from_c, sensor.ranges[-1].to_c
+    between = (float(t) for t in range(0, 2000, STEP_C) if low < t < high)
+    return SensorClassShown(
+        name=sensor.name,
+        lowest_c=low,
+        highest_c=high,
+        tolerances=[
+            ToleranceAt(temperature_c=t, tolerance_c=sensor.tolerance_c(t)) for t in (low, *between, high)
+        ],
+        reference=reference_shown(sensor.source),
+    )
 
 
 def _range(row: Mapping[str, str]) -> _Range:

@@ -151,7 +151,7 @@ def _window(joint: Joint, earlier: Sequence[Joint]) -> Window:
 def _keeps_c(joint: Joint) -> float | None:
     """What the hottest joint of a later heating may read, °C; None if this one may melt again."""
     with about(joint.filler, f"{joint.field}.alloy"):
-        terms = remelting_term(joint.as_earlier, joint.demands.sensor_tolerance_c)
+        terms = remelting_term(joint.as_earlier, joint.demands.budget)
         if not terms:
             return None
         at_once = melting_at_its_bound(joint.as_earlier) > MELTS_AT_ONCE

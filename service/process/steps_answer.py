@@ -2,6 +2,8 @@
 
 from collections.abc import Sequence
 
+from service.process.budget import Budget
+from service.process.budget_asked import budget_of, budget_shown
 from service.process.placed import placed
 from service.process.steps import (
     Collided,
@@ -32,7 +34,10 @@ def steps_of(question: StepsQuestion) -> StepsAnswer:
     """The plan asked for; raises InvalidInput and its like naming the field."""
     names = [asked.name for asked in question.joints]
     check_names(names)
-    joints = [_joint(question, asked, f"joints.{k}", names) for k, asked in enumerate(question.joints)]
+    budget = budget_of(question)
+    joints = [
+        _joint(question, asked, f"joints.{k}", names, budget) for k, asked in enumerate(question.joints)
+    ]
     plan = plan_of(joints)
     alternatives = [] if plan.steps else alternatives_of(joints, plan, question.stocked_fillers)
     elements = frozenset().union(*(joint.filler.elements for joint in joints))
@@ -53,7 +58,9 @@ def steps_of(question: StepsQuestion) -> StepsAnswer:
     )
 
 
-def _joint(question: StepsQuestion, asked: StepAsked, field: str, names: Sequence[str]) -> Joint:
+def _joint(
+    question: StepsQuestion, asked: StepAsked, field: str, names: Sequence[str], budget: Budget
+) -> Joint:
     filler = placed(asked.alloy, f"{field}.alloy")
     limits = tuple(limit_of(limit, f"{field}.upper_limits.{k}") for k, limit in enumerate(asked.upper_limits))
     limits_clash(limits, names, field)
@@ -63,8 +70,8 @@ def _joint(question: StepsQuestion, asked: StepAsked, field: str, names: Sequenc
         Demands(
             target_liquid_fraction=asked.target_liquid_fraction,
             superheat_c=asked.superheat_c,
-            sensor_tolerance_c=question.sensor_tolerance_c,
             spread_c=question.spread_c,
+            budget=budget,
             upper_limits=limits,
         ),
         field,
@@ -84,6 +91,7 @@ def _step(joint: Joint, window: Window) -> StepShown:
         upper_terms=terms_shown(window.upper_terms),
         binding_lower=window.binding_lower,
         binding_upper=window.binding_upper,
+        budget=budget_shown(joint.demands.budget, joint.demands.spread_c, window.combined),
         earlier_joints=[
             SeenLater(
                 name=seen.joint.name,

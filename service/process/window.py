@@ -1,17 +1,19 @@
 """The temperature window of a joint: how hot it must read at least, how hot it may read at most, and why.
 
 The coldest joint must read at least `minimum_peak_c`, while the hottest, `spread_c` above it, may read at
-most `maximum_peak_c`. A sensor may be wrong by its tolerance either way, so every lower term is raised and
-every upper term lowered by it.
+most `maximum_peak_c`. What is uncertain about alloy, data and sensor raises every lower term and lowers every
+upper one, as the budget counts it.
 """
 
-from collections.abc import Sequence
+from collections.abc import Mapping, Sequence
 from dataclasses import dataclass
 
 from diagrams.errors import InvalidInput
 from diagrams.questions.melter import Span
+from service.process.budget import NO_ERRORS, Budget
 from service.process.effort import check_effort
 from service.process.placed import Placed, about
+from service.process.sensors import Sensor, hottest_true_c
 from service.process.window_parts import Part, Term
 from service.process.window_terms import (
     BRAZING_MAXIMUM,
@@ -24,8 +26,9 @@ from service.process.window_terms import (
     remelting_term,
     target_term,
 )
-from service.process.window_verdict import Collision, judge
+from service.process.window_verdict import Collision, Verdict, judge
 from service.process.window_warnings import Warned, warnings_of
+from service.schemas.uncertainty_words import ROOT_SUM_SQUARE, WORST_CASE, Combination
 
 
 @dataclass(frozen=True, kw_only=True)
@@ -34,8 +37,8 @@ class Demands:
 
     target_liquid_fraction: float
     superheat_c: float = 0.0
-    sensor_tolerance_c: float = 0.0
     spread_c: float = 0.0
+    budget: Budget = NO_ERRORS
     upper_limits: tuple[UpperLimit, ...] = ()
     earlier_joints: tuple[EarlierJoint, ...] = ()
 
@@ -45,8 +48,8 @@ class JointSeen:
     """What an earlier joint goes through if the hottest joint reads the maximum.
 
     `nominal` counts the reading as true and the composition as nominal; `worst` takes the sensor to read low
-    by its tolerance and the least favourable composition. Both None where there is no maximum, where it
-    lies beyond the data, or where these tell bounds only.
+    by its tolerance and the least favourable composition, however the budget is combined. Both None where
+    there is no maximum, where it lies beyond the data, or where these tell bounds only.
     """
 
     joint: EarlierJoint
@@ -58,6 +61,8 @@ class JointSeen:
 @dataclass(frozen=True, kw_only=True)
 class Window:
     """The window; without any upper term it is open above: no maximum, no width, no set point, feasible.
+
+    `combined` has the verdict for both ways to combine uncertainties, whichever was chosen.
 
     `width_parts` add up to the width. `setpoint_c` is the middle of what is allowed, for the mean of the
     hottest and the coldest reading.
@@ -74,6 +79,7 @@ class Window:
     binding_lower: str
     binding_upper: str | None
     collision: Collision | None
+    combined: Mapping[Combination, Verdict]
     earlier_joints: tuple[JointSeen, ...]
     warnings: tuple[Warned, ...]
 
@@ -87,22 +93,31 @@ def find_window(filler: Placed, demands: Demands, where: str = "alloy") -> Windo
     _check_names(demands)
     joints = ((f"earlier_joints.{k}.alloy", joint.subject) for k, joint in enumerate(demands.earlier_joints))
     check_effort([(where, filler), *joints], tolerances=True)
-    tolerance_c = demands.sensor_tolerance_c
+    budget = demands.budget
     with about(filler, where):
         solidus_c = filler.melter.kept(0.0).nominal
-        lower = [target_term(filler, demands.target_liquid_fraction, demands.superheat_c, tolerance_c)]
-    practice_lower, practice_upper = practice_terms(filler, tolerance_c)
+        lower = [target_term(filler, demands.target_liquid_fraction, demands.superheat_c, budget)]
+    practice_lower, practice_upper = practice_terms(filler, budget)
     lower += practice_lower
-    upper = [limit_term(limit, tolerance_c) for limit in demands.upper_limits] + practice_upper
+    upper = [limit_term(limit, budget) for limit in demands.upper_limits] + practice_upper
     starts = []
     for k, joint in enumerate(demands.earlier_joints):
         with about(joint.subject, f"earlier_joints.{k}.alloy"):
             starts.append(joint.subject.melter.kept(0.0))
-            upper += remelting_term(joint, tolerance_c)
+            upper += remelting_term(joint, budget)
     verdict = judge(lower, upper, demands.spread_c, demands.earlier_joints)
+    combined = {
+        by: judge(
+            [term.by(by) for term in lower],
+            [term.by(by) for term in upper],
+            demands.spread_c,
+            demands.earlier_joints,
+        )
+        for by in (WORST_CASE, ROOT_SUM_SQUARE)
+    }
     maximum_c = None if verdict.upper is None else verdict.upper.value_c
     seen = tuple(
-        _seen(joint, start, maximum_c, tolerance_c)
+        _seen(joint, start, maximum_c, budget.sensor)
         for joint, start in zip(demands.earlier_joints, starts, strict=True)
     )
     return Window(
@@ -117,6 +132,7 @@ def find_window(filler: Placed, demands: Demands, where: str = "alloy") -> Windo
         binding_lower=verdict.lower.name,
         binding_upper=None if verdict.upper is None else verdict.upper.name,
         collision=verdict.collision,
+        combined=combined,
         earlier_joints=seen,
         warnings=warnings_of(
             filler,
@@ -125,6 +141,7 @@ def find_window(filler: Placed, demands: Demands, where: str = "alloy") -> Windo
             upper,
             target_liquid_fraction=demands.target_liquid_fraction,
             solidus_c=solidus_c,
+            data_compared=budget.data_c is None,
         ),
     )
 
@@ -148,9 +165,9 @@ def _check_names(demands: Demands) -> None:
             taken.add(key)
 
 
-def _seen(joint: EarlierJoint, starts: Span, maximum_c: float | None, tolerance_c: float) -> JointSeen:
+def _seen(joint: EarlierJoint, starts: Span, maximum_c: float | None, sensor: Sensor) -> JointSeen:
     if maximum_c is None:
         return JointSeen(joint, starts, None, None)
     melter = joint.subject.melter
-    worst = melter.most_liquid_up_to(maximum_c + tolerance_c)
+    worst = melter.most_liquid_up_to(hottest_true_c(sensor, maximum_c))
     return JointSeen(joint, starts, melter.liquid_up_to(maximum_c), worst)

@@ -4,6 +4,7 @@ from collections.abc import Iterable
 
 from diagrams.errors import InvalidInput
 from diagrams.fillers import shown
+from service.process.budget_asked import budget_of, budget_shown
 from service.process.melting import span_of
 from service.process.placed import Placed, placed, placed_text
 from service.process.upper_limits import upper_limit
@@ -13,6 +14,8 @@ from service.process.window_terms import EarlierJoint, UpperLimit
 from service.process.window_verdict import Collision
 from service.safety import safety_for
 from service.schemas.address import tolerance_of
+from service.schemas.uncertainty import UncertaintyShown
+from service.schemas.uncertainty_words import ROOT_SUM_SQUARE, WORST_CASE
 from service.schemas.window import (
     CollisionShown,
     JointShown,
@@ -45,8 +48,8 @@ def demands_of(question: WindowQuestion, where: str = "") -> Demands:
     return Demands(
         target_liquid_fraction=question.target_liquid_fraction,
         superheat_c=question.superheat_c,
-        sensor_tolerance_c=question.sensor_tolerance_c,
         spread_c=question.spread_c,
+        budget=budget_of(question),
         upper_limits=tuple(
             limit_of(limit, f"{before}upper_limits.{k}") for k, limit in enumerate(question.upper_limits)
         ),
@@ -73,8 +76,8 @@ def window_at(address: WindowAddress) -> WindowAnswer:
     demands = Demands(
         target_liquid_fraction=address.target_liquid_fraction,
         superheat_c=address.superheat_c,
-        sensor_tolerance_c=address.sensor_tolerance_c,
         spread_c=address.spread_c,
+        budget=budget_of(address),
         upper_limits=tuple(limits),
     )
     return _shown(filler, demands, find_window(filler, demands, ""))
@@ -99,6 +102,7 @@ def _shown(filler: Placed, demands: Demands, found: Window) -> WindowAnswer:
         binding_lower=found.binding_lower,
         binding_upper=found.binding_upper,
         collision=None if found.collision is None else _collision(found.collision),
+        budget=budget_shown(demands.budget, demands.spread_c, found.combined),
         earlier_joints=[_joint(seen, found.maximum_peak_c is not None) for seen in found.earlier_joints],
         warnings=[WarningShown(code=warned.code, text=warned.text) for warned in found.warnings],
         source=filler.source,
@@ -124,7 +128,21 @@ def limit_of(asked: LimitAsked, where: str) -> UpperLimit:
 
 def terms_shown(terms: Iterable[Term]) -> list[TermShown]:
     """Terms as answered."""
-    return [TermShown(name=t.name, value_c=t.value_c, reason=t.reason, parts=_parts(t.parts)) for t in terms]
+    return [
+        TermShown(
+            name=t.name,
+            value_c=t.value_c,
+            reason=t.reason,
+            parts=_parts(t.parts),
+            uncertainties=[
+                UncertaintyShown(name=part.name, size_c=part.value_c, reason=part.reason)
+                for part in t.uncertain
+            ],
+            worst_case_c=t.by(WORST_CASE).value_c,
+            root_sum_square_c=t.by(ROOT_SUM_SQUARE).value_c,
+        )
+        for t in terms
+    ]
 
 
 def _parts(parts: Iterable[Part]) -> list[PartShown]:

@@ -1,6 +1,9 @@
 """What a bound is made of: named parts that add up to it, each with its reason."""
 
-from dataclasses import dataclass
+import math
+from dataclasses import dataclass, replace
+
+from service.schemas.uncertainty_words import WORST_CASE, Combination
 
 
 @dataclass(frozen=True)
@@ -14,13 +17,40 @@ class Part:
 
 @dataclass(frozen=True)
 class Term:
-    """One bound on a reading; added up in their order, its parts give it to the last digit.
+    """One bound on a reading: where it starts, what was asked for on top, and what is uncertain about it.
 
-    After the first, which is a temperature, all parts add to it or all take off.
+    `asked` are added as they are. `uncertain` are sizes, none negative: added for a lower bound, taken off
+    for an upper one, all of them or as the root of the sum of their squares.
     """
 
     name: str
-    parts: tuple[Part, ...]
+    start: Part
+    asked: tuple[Part, ...]
+    uncertain: tuple[Part, ...]
+    lower: bool
+    combination: Combination = WORST_CASE
+
+    @property
+    def parts(self) -> tuple[Part, ...]:
+        """Added up in this order they give the bound to the last digit."""
+        sign = 1.0 if self.lower else -1.0
+        if self.combination == WORST_CASE or len(self.uncertain) < 2:
+            counted = [replace(part, value_c=sign * part.value_c + 0.0) for part in self.uncertain]
+            return (self.start, *self.asked, *counted)
+        names = [part.name for part in self.uncertain]
+        told = ", ".join(f"{part.name} {part.value_c:.4g} °C" for part in self.uncertain)
+        together = Part(
+            f"{', '.join(names[:-1])} and {names[-1]}, root-sum-square",
+            sign * self.uncertain_c + 0.0,
+            f"Root of the sum of the squares of {told}, taken to be independent of each other.",
+        )
+        return (self.start, *self.asked, together)
+
+    @property
+    def uncertain_c(self) -> float:
+        """What its uncertainties come to, °C."""
+        sizes = [part.value_c for part in self.uncertain]
+        return sum(sizes) if self.combination == WORST_CASE else math.hypot(*sizes)
 
     @property
     def value_c(self) -> float:
@@ -31,12 +61,16 @@ class Term:
     def reason(self) -> str:
         """All of it in words: the temperature it starts from, what is added or taken off, the sum."""
         start, *more = self.parts
-        changes = [f"{part.name} {abs(part.value_c):g} °C" for part in more if part.value_c]
+        changes = [f"{part.name} {abs(part.value_c):.4g} °C" for part in more if part.value_c]
         if not changes:
             return start.reason
-        sign = "Plus" if self.value_c > start.value_c else "Minus"
+        sign = "plus" if self.lower else "minus"
         listed = f"{', '.join(changes[:-1])} and {changes[-1]}" if len(changes) > 1 else changes[0]
-        return f"{start.reason} {sign} {listed}: {self.value_c:.2f} °C."
+        return f"{start.reason} {start.value_c:.2f} °C {sign} {listed}: {self.value_c:.2f} °C."
+
+    def by(self, combination: Combination) -> "Term":
+        """The same bound, its uncertainties combined so."""
+        return replace(self, combination=combination)
 
 
 def superheat(superheat_c: float) -> Part:
@@ -51,25 +85,7 @@ def margin(margin_c: float) -> Part:
     return Part("margin", 0.0 - margin_c, reason if margin_c else "No margin below it was asked for.")
 
 
-def raised_by_sensor(tolerance_c: float) -> Part:
-    """What a lower bound on the true temperature gains as a bound on the reading."""
-    reason = f"A reading may lie {tolerance_c:g} °C above the true temperature."
-    return _sensor(tolerance_c, reason, tolerance_c)
-
-
-def lowered_by_sensor(tolerance_c: float) -> Part:
-    """What an upper bound on the true temperature loses as a bound on the reading."""
-    reason = f"A reading may lie {tolerance_c:g} °C below the true temperature."
-    return _sensor(0.0 - tolerance_c, reason, tolerance_c)
-
-
 def spread(spread_c: float) -> Part:
     """What the width of a window loses: coldest and hottest joint must be right at once."""
     reason = f"The hottest joint reads {spread_c:g} °C more than the coldest, and both must be right at once."
     return Part("spread", 0.0 - spread_c, reason if spread_c else "Coldest and hottest joint read the same.")
-
-
-def _sensor(value_c: float, reason: str, tolerance_c: float) -> Part:
-    return Part(
-        "sensor tolerance", value_c, reason if tolerance_c else "Readings are taken to be exactly right."
-    )

@@ -3,16 +3,10 @@
 from collections.abc import Mapping
 from dataclasses import dataclass
 
+from service.process.budget import Budget
 from service.process.placed import Placed
 from service.process.upper_limits import UpperKnown
-from service.process.window_parts import (
-    Part,
-    Term,
-    lowered_by_sensor,
-    margin,
-    raised_by_sensor,
-    superheat,
-)
+from service.process.window_parts import Part, Term, margin, superheat
 
 TARGET = "target liquid fraction"
 BRAZING_MINIMUM = "brazing range minimum"
@@ -39,7 +33,7 @@ class EarlierJoint:
     margin_c: float = 0.0
 
 
-def target_term(filler: Placed, fraction: float, superheat_c: float, tolerance_c: float) -> Term:
+def target_term(filler: Placed, fraction: float, superheat_c: float, budget: Budget) -> Term:
     """Hot enough for the liquid fraction even at the least favourable composition in tolerance."""
     found = filler.melter.needed(fraction)
     reason = (
@@ -47,20 +41,22 @@ def target_term(filler: Placed, fraction: float, superheat_c: float, tolerance_c
         f"{_at_worst(filler, 'from', found.highest, found.highest_at)} ({_data(filler)})."
     )
     name = "liquidus" if fraction == 1.0 else "temperature of the target fraction"
-    start = Part(name, found.safe_high, reason)
-    return Term(TARGET, (start, superheat(superheat_c), raised_by_sensor(tolerance_c)))
+    start = Part(name, found.nominal, reason)
+    uncertain = budget.above(found, filler.melter, fraction, superheat_c)
+    return Term(TARGET, start, (superheat(superheat_c),), uncertain, True, budget.combination)
 
 
-def limit_term(limit: UpperLimit, tolerance_c: float) -> Term:
+def limit_term(limit: UpperLimit, budget: Budget) -> Term:
     """A named limit, lowered by what the sensor may miss."""
     reason = f"{limit.name} may reach {limit.limit_c:g} °C."
     if limit.known is not None:
         reason = f"{limit.name}: {limit.known.told}"
     start = Part("limit", limit.limit_c, reason)
-    return Term(limit.name, (start, margin(limit.margin_c), lowered_by_sensor(tolerance_c)))
+    uncertain = (budget.read_low(limit.limit_c - limit.margin_c),)
+    return Term(limit.name, start, (margin(limit.margin_c),), uncertain, False, budget.combination)
 
 
-def practice_terms(filler: Placed, tolerance_c: float) -> tuple[list[Term], list[Term]]:
+def practice_terms(filler: Placed, budget: Budget) -> tuple[list[Term], list[Term]]:
     """The ends of the brazing range that the standard gives this filler, as lower and as upper term.
 
     The lower end counts too: a filler that is molten may still not flow (BNi-6, BCu-1), and one of a wide
@@ -75,12 +71,14 @@ def practice_terms(filler: Placed, tolerance_c: float) -> tuple[list[Term], list
         f"The filler table gives {row.name} a brazing range of {low_c:g} to {high_c:g} °C ({row.source}; "
         f"{row.how}): guidance from practice, left out if the alloy is given by composition."
     )
-    lower = Term(BRAZING_MINIMUM, (Part(BRAZING_MINIMUM, low_c, reason), raised_by_sensor(tolerance_c)))
-    upper = Term(BRAZING_MAXIMUM, (Part(BRAZING_MAXIMUM, high_c, reason), lowered_by_sensor(tolerance_c)))
+    start, end = Part(BRAZING_MINIMUM, low_c, reason), Part(BRAZING_MAXIMUM, high_c, reason)
+    by = budget.combination
+    lower = Term(BRAZING_MINIMUM, start, (), (budget.read_high(low_c),), True, by)
+    upper = Term(BRAZING_MAXIMUM, end, (), (budget.read_low(high_c),), False, by)
     return [lower], [upper]
 
 
-def remelting_term(joint: EarlierJoint, tolerance_c: float) -> list[Term]:
+def remelting_term(joint: EarlierJoint, budget: Budget) -> list[Term]:
     """The highest temperature an earlier joint stands; none if it may melt altogether."""
     if joint.max_liquid_fraction >= 1.0:
         return []
@@ -92,8 +90,9 @@ def remelting_term(joint: EarlierJoint, tolerance_c: float) -> list[Term]:
         f"({_data(joint.subject)})."
     )
     name = "solidus" if joint.max_liquid_fraction == 0.0 else "temperature of the most liquid allowed"
-    start = Part(name, found.safe_low, reason)
-    return [Term(joint.name, (start, margin(joint.margin_c), lowered_by_sensor(tolerance_c)))]
+    start = Part(name, found.nominal, reason)
+    uncertain = budget.below(found, joint.subject.melter, joint.max_liquid_fraction, joint.margin_c)
+    return [Term(joint.name, start, (margin(joint.margin_c),), uncertain, False, budget.combination)]
 
 
 def label(subject: Placed) -> str:

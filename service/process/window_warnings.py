@@ -3,6 +3,7 @@
 from collections.abc import Iterable, Sequence
 from dataclasses import dataclass
 
+from service.process.data_uncertainty import data_uncertainty
 from service.process.known_limits import process_limit
 from service.process.placed import Placed
 from service.process.upper_limits import BASE_METAL
@@ -28,6 +29,7 @@ def warnings_of(
     *,
     target_liquid_fraction: float,
     solidus_c: float,
+    data_compared: bool,
 ) -> tuple[Warned, ...]:
     """All warnings, in a steady order."""
     found = []
@@ -50,6 +52,9 @@ def warnings_of(
     found += [Warned("alloy-note", text) for text in _noted([filler, *(j.subject for j in joints)])]
     found += [Warned("base-metal-solidus", text) for text in _at_the_solidus(limits)]
     found += [Warned("printed-values", text) for text in _printed([filler, *(j.subject for j in joints)])]
+    if data_compared:
+        unknown = _not_compared([filler, *(j.subject for j in joints)])
+        found += [Warned("data-not-compared", text) for text in unknown]
     found += [Warned("from-memory", text) for text in _remembered([filler, *(j.subject for j in joints)])]
     found += [Warned("from-memory", text) for text in _remembered_limits(limits)]
     return tuple(found)
@@ -107,6 +112,16 @@ def _printed(subjects: Iterable[Placed]) -> list[str]:
                 f"How much is liquid between them, and what its tolerance changes, is not known."
             ] = None
     return list(texts)
+
+
+def _not_compared(subjects: Iterable[Placed]) -> list[str]:
+    """Alloys of whose data nothing tells how far they are off, each once."""
+    lacking = [subject for subject in subjects if not data_uncertainty(subject.melter, 1.0).known]
+    texts = [
+        f"Printed temperatures of {label(subject)} stand in for data: no uncertainty of theirs is counted."
+        for subject in lacking
+    ]
+    return list(dict.fromkeys(texts))
 
 
 def _remembered(subjects: Iterable[Placed]) -> list[str]:

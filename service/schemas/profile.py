@@ -6,8 +6,8 @@ from pydantic import Field
 
 from service.schemas.base import StrictModel
 from service.schemas.profile_words import MOST_SAMPLES, MOST_SENSORS, Repair
+from service.schemas.uncertainty import Difference
 from service.schemas.window import (
-    Difference,
     KnownKey,
     Name,
     Target,
@@ -122,8 +122,8 @@ class ProfileQuestion(WindowQuestion):
     )
     window: WindowGiven | None = Field(
         default=None,
-        description="A window of your own in place of one worked out; then superheat, spread, sensor "
-        "tolerance and upper limits belong to it and are not given here.",
+        description="A window of your own in place of one worked out; then superheat, spread and upper "
+        "limits belong to it and are not given here; the uncertainty budget counts for earlier joints only.",
     )
     limits: LimitsAsked = LimitsAsked()
     standard_profile: Annotated[str, Field(min_length=1, max_length=100)] | None = Field(

@@ -6,12 +6,20 @@ from pydantic import BaseModel, ConfigDict, Field
 
 from service.schemas.address import LONGEST_LIST, TOLERANCE
 from service.schemas.profile import CELSIUS, CLASSIFICATION, STANDARD_PROFILE
-from service.schemas.window import (
+from service.schemas.uncertainty import (
+    COMBINATION,
+    COUNT_DATA,
+    DATA,
     SENSOR,
+    SENSOR_CLASS,
     SPREAD,
+    ClassName,
+    Difference,
+)
+from service.schemas.uncertainty_words import Combination
+from service.schemas.window import (
     SUPERHEAT,
     TARGET,
-    Difference,
     KnownKey,
     Target,
     Temperature,
@@ -37,7 +45,11 @@ class ProfileAddress(BaseModel):
     target_liquid_fraction: Target | None = Field(default=None, description=ONLY_WITH_A_TABLE + TARGET)
     superheat_c: Difference | None = Field(default=None, description=ONLY_WITH_A_TABLE + SUPERHEAT)
     sensor_tolerance_c: Difference | None = Field(default=None, description=ONLY_WITH_A_TABLE + SENSOR)
+    sensor_class: ClassName | None = Field(default=None, description=ONLY_WITH_A_TABLE + SENSOR_CLASS)
     spread_c: Difference | None = Field(default=None, description=ONLY_WITH_A_TABLE + SPREAD)
+    data_tolerance_c: Difference | None = Field(default=None, description=ONLY_WITH_A_TABLE + DATA)
+    count_data: bool | None = Field(default=None, description=ONLY_WITH_A_TABLE + COUNT_DATA)
+    combination: Combination | None = Field(default=None, description=ONLY_WITH_A_TABLE + COMBINATION)
     limit_c: Temperature | None = Field(
         default=None, description=ONLY_WITH_A_TABLE + "One upper limit, °C, which the answer names `limit`."
     )

@@ -8,6 +8,7 @@ from service.schemas.alloy import AlloyUsed
 from service.schemas.base import Answer, AnswerModel
 from service.schemas.profile_words import Repair, Side
 from service.schemas.source import Reference, SourceUsed
+from service.schemas.uncertainty import BudgetShown
 from service.schemas.window import LiquidReached, WarningShown
 
 
@@ -113,6 +114,7 @@ class ProfileAnswer(Answer):
     )
     alloy: AlloyUsed
     window: WindowJudged
+    budget: BudgetShown | None = Field(description="Null if the window was given.")
     levels: LevelsShown
     sensors: list[SensorShown]
     run_limits: list[LimitChecked] = Field(description="Demands on all sensors together.")

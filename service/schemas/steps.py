@@ -7,12 +7,10 @@ from pydantic import Field
 from service.schemas.alloy import AlloyAsked, AlloyUsed
 from service.schemas.base import Answer, AnswerModel, StrictModel
 from service.schemas.source import SourceUsed
+from service.schemas.uncertainty import BudgetAsked, BudgetShown, Difference
 from service.schemas.window import (
-    SENSOR,
-    SPREAD,
     SUPERHEAT,
     TARGET,
-    Difference,
     LimitAsked,
     LiquidReached,
     Name,
@@ -46,12 +44,10 @@ class StepAsked(StrictModel):
     )
 
 
-class StepsQuestion(StrictModel):
+class StepsQuestion(BudgetAsked):
     """Joints of one assembly, in any order."""
 
     joints: Annotated[list[StepAsked], Field(min_length=1, max_length=MOST_STEPS)]
-    sensor_tolerance_c: Difference = Field(default=0.0, description=SENSOR)
-    spread_c: Difference = Field(default=0.0, description=SPREAD)
     stocked_fillers: Annotated[
         list[Annotated[str, Field(min_length=1, max_length=100)]], Field(max_length=MOST_STOCKED)
     ] = Field(
@@ -83,6 +79,7 @@ class StepShown(AnswerModel):
     upper_terms: list[TermShown]
     binding_lower: str
     binding_upper: str | None
+    budget: BudgetShown
     earlier_joints: list[SeenLater]
     warnings: list[WarningShown]
     source: SourceUsed

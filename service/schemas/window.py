@@ -10,12 +10,25 @@ from service.schemas.alloy import TRACES, AlloyAsked, AlloyUsed
 from service.schemas.base import Answer, AnswerModel, StrictModel
 from service.schemas.melting import TemperatureSpan
 from service.schemas.source import SourceUsed
+from service.schemas.uncertainty import (
+    COMBINATION,
+    COUNT_DATA,
+    DATA,
+    SENSOR,
+    SENSOR_CLASS,
+    SPREAD,
+    BudgetAsked,
+    BudgetShown,
+    ClassName,
+    Difference,
+    UncertaintyShown,
+)
+from service.schemas.uncertainty_words import WORST_CASE, Combination
 
 MOST_LIMITS = 100
 MOST_JOINTS = 30
 
 Name = Annotated[str, Field(min_length=1, max_length=100)]
-Difference = Annotated[float, Field(ge=0, le=1000)]
 Temperature = Annotated[float, Field(ge=-273.15, le=5000)]
 KnownKey = Annotated[str, Field(min_length=1, max_length=120)]
 Target = Annotated[float, Field(gt=0, le=1)]
@@ -29,8 +42,6 @@ _KNOWN = (
     "Key of a stored limit instead of a temperature of your own: the solidus of a base metal, the "
     "classification temperature of a component, the upper end of a flux; `GET /v1/known-limits` lists all."
 )
-SENSOR = "By how much a reading may differ from the true temperature, either way, °C."
-SPREAD = "By how much the hottest joint lies above the coldest, °C."
 
 
 class LimitAsked(StrictModel):
@@ -63,14 +74,12 @@ class JointAsked(StrictModel):
     )
 
 
-class WindowQuestion(StrictModel):
+class WindowQuestion(BudgetAsked):
     """A joint to be made: its filler, and all that bounds its temperature."""
 
     alloy: AlloyAsked = Field(description="The filler.")
     target_liquid_fraction: Target = Field(description=TARGET)
     superheat_c: Difference = Field(default=0.0, description=SUPERHEAT)
-    sensor_tolerance_c: Difference = Field(default=0.0, description=SENSOR)
-    spread_c: Difference = Field(default=0.0, description=SPREAD)
     upper_limits: list[LimitAsked] = Field(
         default=[], max_length=MOST_LIMITS, description="Limits of parts, boards and base metals."
     )
@@ -94,7 +103,13 @@ class WindowAddress(BaseModel):
     target_liquid_fraction: Target = Field(description=TARGET, examples=[1])
     superheat_c: Difference = Field(default=0.0, description=SUPERHEAT)
     sensor_tolerance_c: Difference = Field(default=0.0, description=SENSOR)
+    sensor_class: ClassName | None = Field(
+        default=None, description=SENSOR_CLASS, examples=["IEC 60584 type K class 1"]
+    )
     spread_c: Difference = Field(default=0.0, description=SPREAD)
+    data_tolerance_c: Difference = Field(default=0.0, description=DATA)
+    count_data: bool = Field(default=False, description=COUNT_DATA)
+    combination: Combination = Field(default=WORST_CASE, description=COMBINATION)
     tolerance_wt: str | None = Field(
         default=None,
         min_length=1,
@@ -129,14 +144,17 @@ class TermShown(AnswerModel):
     """One bound on a reading."""
 
     name: str
-    value_c: float = Field(description="The bound, °C, sensor tolerance included.")
+    value_c: float = Field(description="The bound, °C, uncertainties included.")
     reason: str = Field(
         description="How it comes about: composition, data and edition, tolerance, additions."
     )
     parts: list[PartShown] = Field(
-        description="The same as a sum: the temperature it starts from, then superheat, margin and sensor "
-        "tolerance, zero where none was asked for. Added up in this order they are `value_c` exactly."
+        description="The same as a sum: the temperature it starts from, superheat or margin, then what is "
+        "uncertain, zero where nothing is. Added up in this order they are `value_c` exactly."
     )
+    uncertainties: list[UncertaintyShown] = Field(description="What is uncertain about it, each by itself.")
+    worst_case_c: float = Field(description="The bound with all uncertainties added up, °C.")
+    root_sum_square_c: float = Field(description="The bound with the root of the sum of their squares, °C.")
 
 
 class CollisionShown(AnswerModel):
@@ -159,7 +177,7 @@ class LiquidReached(AnswerModel):
     )
     worst: float | None = Field(
         description="At the least favourable composition in tolerance, the sensor reading low by its "
-        "tolerance; null where no data tell."
+        "tolerance, however uncertainties are combined; null where no data tell."
     )
 
 
@@ -183,7 +201,7 @@ class WarningShown(AnswerModel):
 
     code: str = Field(
         description="`partly-liquid`, `no-upper-limit`, `limit-below-solidus`, `melts-at-once`, "
-        "`alloy-note`, `base-metal-solidus`, `printed-values` or `from-memory`."
+        "`alloy-note`, `base-metal-solidus`, `printed-values`, `data-not-compared` or `from-memory`."
     )
     text: str
 
@@ -219,6 +237,7 @@ class WindowAnswer(Answer):
     binding_lower: str = Field(description="Name of the lower term that decides.")
     binding_upper: str | None = Field(description="Name of the upper term that decides.")
     collision: CollisionShown | None = Field(description="What collides, if there is no window.")
+    budget: BudgetShown
     earlier_joints: list[JointShown]
     warnings: list[WarningShown]
     source: SourceUsed

@@ -6,6 +6,7 @@ import numpy as np
 import pytest
 
 from diagrams.alloys import alloy_from_designation
+from diagrams.comparison import compared as compared_before
 from diagrams.errors import NotCovered, OutsideData, UnknownAlloy
 from diagrams.fillers import fillers, find_filler
 from diagrams.fitting.systems import read_system_fit, system_fit_ids
@@ -49,6 +50,13 @@ def test_row(name: str) -> None:
         assert KNOWN[name]
     else:
         assert agrees, (solidus, liquidus)
+
+
+def test_the_stored_comparison_is_what_the_data_give() -> None:
+    stored = {r.filler: (r.solidus_off_c, r.liquidus_off_c) for r in compared_before() if r.filler in ROWS}
+    assert set(stored) == set(ROWS)
+    for name, (_, solidus, liquidus) in ROWS.items():
+        assert stored[name] == pytest.approx((solidus, liquidus), abs=0.006), "python -m diagrams.comparison"
 
 
 def test_known_rows_are_rows() -> None:

@@ -7,7 +7,9 @@ from hypothesis import strategies as st
 from diagrams.errors import InvalidInput
 from diagrams.files.catalog import catalog
 from diagrams.reference import reference_table
+from service.process.budget import Budget
 from service.process.placed import placed
+from service.process.sensors import Stated
 from service.process.upper_limits import upper_limit, upper_limits
 from service.process.window import Demands, find_window
 from service.process.window_terms import EarlierJoint, UpperLimit
@@ -29,7 +31,8 @@ def earlier(alloy, fraction=0.0, margin_c=0.0):
     return EarlierJoint("first", placed(alloy), fraction, margin_c)
 
 
-def window(alloy, *, limits=(), joints=(), target=1.0, **more):
+def window(alloy, *, limits=(), joints=(), target=1.0, sensor_tolerance_c=0.0, **more):
+    more.setdefault("budget", Budget(Stated(sensor_tolerance_c)))
     named = tuple(limit if isinstance(limit, UpperLimit) else UpperLimit("part", limit) for limit in limits)
     demands = Demands(target_liquid_fraction=target, upper_limits=named, earlier_joints=tuple(joints), **more)
     return find_window(placed(alloy), demands)
@@ -107,11 +110,17 @@ def test_parts_add_up_to_the_last_digit(superheat_c, sensor_c, margin_c, spread_
             assert part.reason
         assert total == term.value_c
     lower = {part.name: part.value_c for part in found.lower_terms[0].parts}
-    assert list(lower) == ["liquidus", "superheat", "sensor tolerance"]
+    assert list(lower) == ["liquidus", "superheat", "alloy tolerance", "data", "sensor tolerance"]
     assert (lower["superheat"], lower["sensor tolerance"]) == (superheat_c, sensor_c)
-    for term, start in zip(found.upper_terms[:1] + found.upper_terms[2:], ("limit", "solidus"), strict=True):
+    alloy_and_data = ["alloy tolerance", "data"]
+    for term, start, more in zip(
+        found.upper_terms[:1] + found.upper_terms[2:],
+        ("limit", "solidus"),
+        ([], alloy_and_data),
+        strict=True,
+    ):
         upper = {part.name: part.value_c for part in term.parts}
-        assert list(upper) == [start, "margin", "sensor tolerance"]
+        assert list(upper) == [start, "margin", *more, "sensor tolerance"]
         assert (upper["margin"], upper["sensor tolerance"]) == (-margin_c, -sensor_c)
     width = {part.name: part.value_c for part in found.width_parts}
     assert width == {
@@ -173,12 +182,15 @@ def test_reasons_say_plus_or_minus_once():
         sensor_tolerance_c=2,
     )
     assert found.lower_terms[0].reason.endswith(
-        f". Plus superheat 15 °C and sensor tolerance 2 °C: {found.minimum_peak_c:.2f} °C."
+        f". 183.97 °C plus superheat 15 °C, alloy tolerance 0.4856 °C and sensor tolerance 2 °C: "
+        f"{found.minimum_peak_c:.2f} °C."
     )
     assert found.upper_terms[0].reason == (
-        "board may reach 260 °C. Minus margin 5 °C and sensor tolerance 2 °C: 253.00 °C."
+        "board may reach 260 °C. 260.00 °C minus margin 5 °C and sensor tolerance 2 °C: 253.00 °C."
     )
-    assert found.upper_terms[1].reason == "part may reach 250 °C. Minus sensor tolerance 2 °C: 248.00 °C."
+    assert found.upper_terms[1].reason == (
+        "part may reach 250 °C. 250.00 °C minus sensor tolerance 2 °C: 248.00 °C."
+    )
     assert window(AlloyAsked(designation="Sn63Pb37"), limits=[250.0]).upper_terms[0].reason == (
         "part may reach 250 °C."
     )

@@ -8,7 +8,9 @@ from hypothesis import strategies as st
 from diagrams.errors import InvalidInput
 from diagrams.files.catalog import catalog
 from diagrams.questions.melting import melting_curve
+from service.process.budget import Budget
 from service.process.placed import placed
+from service.process.sensors import Stated
 from service.process.window import Demands, find_window
 from service.process.window_terms import EarlierJoint, UpperLimit
 from service.schemas.alloy import AlloyAsked
@@ -23,7 +25,8 @@ degrees = st.floats(0.0, 40.0)
 limits = st.lists(st.floats(100.0, 400.0), max_size=4)
 
 
-def window(alloy=TIN_LEAD, *, limits=(), joints=(), target=1.0, **more):
+def window(alloy=TIN_LEAD, *, limits=(), joints=(), target=1.0, sensor_tolerance_c=0.0, **more):
+    more.setdefault("budget", Budget(Stated(sensor_tolerance_c)))
     return find_window(
         placed(alloy),
         Demands(

@@ -5,6 +5,7 @@ from dataclasses import dataclass
 
 from diagrams.errors import InvalidInput
 from service.process.bounds import Bounds
+from service.process.budget import Budget
 from service.process.placed import Placed, about, placed
 from service.process.profiles.asked import channels_of, demands_of, rules_of, window_given
 from service.process.profiles.demands import Levels
@@ -88,13 +89,13 @@ def _with_earlier(given: Bounds, demands: Demands) -> Bounds:
     """A given window, cut where an earlier joint would take harm."""
     tops = [] if given.high is None else [given.high]
     for k, joint in enumerate(demands.earlier_joints):
-        tops += _keeps(joint, demands.sensor_tolerance_c, f"earlier_joints.{k}.alloy")
+        tops += _keeps(joint, demands.budget, f"earlier_joints.{k}.alloy")
     return Bounds(given.low, min(tops, default=None))
 
 
-def _keeps(joint: EarlierJoint, tolerance_c: float, where: str) -> list[float]:
+def _keeps(joint: EarlierJoint, budget: Budget, where: str) -> list[float]:
     with about(joint.subject, where):
-        return [term.value_c for term in remelting_term(joint, tolerance_c)]
+        return [term.value_c for term in remelting_term(joint, budget)]
 
 
 def _wanted_c(bounds: Bounds, levels: Levels) -> float:

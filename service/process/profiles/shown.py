@@ -2,9 +2,11 @@
 
 from collections.abc import Iterable
 
+from service.process.budget_asked import budget_shown
 from service.process.profiles.check import Run, checked_run
 from service.process.profiles.judge import SensorJudged
 from service.process.profiles.limits import Checked
+from service.process.sensors import hottest_true_c
 from service.process.window_terms import EarlierJoint
 from service.safety import safety_for
 from service.schemas.profile import ProfileQuestion
@@ -21,6 +23,7 @@ from service.schemas.profile_verdict import (
     WindowJudged,
 )
 from service.schemas.source import reference_shown
+from service.schemas.uncertainty import BudgetShown
 from service.schemas.window import LiquidReached, WarningShown
 
 
@@ -40,6 +43,7 @@ def profile_of(question: ProfileQuestion) -> ProfileAnswer:
             feasible=_feasible(run),
             given=run.window is None,
         ),
+        budget=_budget(run),
         levels=LevelsShown(
             solidus_c=run.levels.solidus_c,
             liquidus_c=run.levels.liquidus_c,
@@ -60,6 +64,12 @@ def profile_of(question: ProfileQuestion) -> ProfileAnswer:
         source=run.filler.source,
         safety=safety_for(elements, run.filler.process, run.hottest_c),
     )
+
+
+def _budget(run: Run) -> BudgetShown | None:
+    if run.window is None:
+        return None
+    return budget_shown(run.demands.budget, run.demands.spread_c, run.window.combined)
 
 
 def _feasible(run: Run) -> bool:
@@ -106,7 +116,7 @@ def _checks(checks: Iterable[Checked]) -> list[LimitChecked]:
 
 def _earlier(run: Run, joint: EarlierJoint) -> EarlierJointSeen:
     melter = joint.subject.melter
-    worst_c = run.hottest_c + run.demands.sensor_tolerance_c
+    worst_c = hottest_true_c(run.demands.budget.sensor, run.hottest_c)
     return EarlierJointSeen(
         name=joint.name,
         alloy=joint.subject.shown,
