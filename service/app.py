@@ -32,6 +32,7 @@ from service.routes import (
     profiles,
     safety,
     sections,
+    shortlists,
     solidification,
     steps,
     window,
@@ -55,6 +56,7 @@ ROUTERS = (
     steps.router,
     baths.router,
     fillers.router,
+    shortlists.router,
     safety.router,
     health.router,
 )

@@ -45,8 +45,20 @@ class Budget:
         return self._sensor(true_c, "above")
 
     def read_low(self, true_c: float) -> Part:
-        """By how much a reading may lie below a true temperature."""
-        return self._sensor(true_c, "below")
+        """By how much a reading may lie below a true temperature.
+
+        Hotter than its class ends a sensor tells nothing: readings have to stay under that end.
+        """
+        top_c = self.sensor.top_c
+        if true_c <= top_c:
+            return self._sensor(true_c, "below")
+        at_top = self._sensor(top_c, "below")
+        beyond_c = true_c - top_c
+        return Part(
+            SENSOR,
+            beyond_c + at_top.value_c,
+            f"The class of the sensor ends at {top_c:g} °C, {beyond_c:.1f} °C lower. {at_top.reason}",
+        )
 
     def _sensor(self, true_c: float, side: str) -> Part:
         size_c, told = self.sensor.tolerance_c(true_c), self.sensor.told

@@ -30,13 +30,16 @@ def choose(wanted: FillersWanted) -> list[Filler]:
             field="without",
             remedy="Name an element in contains or in without, not in both.",
         )
-    low, high = wanted.liquidus_min_c, wanted.liquidus_max_c
-    if low is not None and high is not None and low > high:
-        raise InvalidInput(
-            f"liquidus_min_c ({low:g}) is greater than liquidus_max_c ({high:g}).",
-            field="liquidus_min_c",
-            remedy="Give a lowest that is not above the highest.",
-        )
+    for name, low, high in (
+        ("liquidus", wanted.liquidus_min_c, wanted.liquidus_max_c),
+        ("brazing", wanted.brazing_min_c, wanted.brazing_max_c),
+    ):
+        if low is not None and high is not None and low > high:
+            raise InvalidInput(
+                f"{name}_min_c ({low:g}) is greater than {name}_max_c ({high:g}).",
+                field=f"{name}_min_c",
+                remedy="Give a lowest that is not above the highest.",
+            )
     return [f for f in fillers() if _holds(f, contains, without) and _meets(f, wanted)]
 
 
@@ -65,8 +68,25 @@ def _meets(filler: Filler, wanted: FillersWanted) -> bool:
         and (wanted.solidus_min_c is None or filler.solidus_c >= wanted.solidus_min_c)
         and (wanted.liquidus_min_c is None or filler.liquidus_c >= wanted.liquidus_min_c)
         and (wanted.liquidus_max_c is None or filler.liquidus_c <= wanted.liquidus_max_c)
+        and _brazed_within(filler, wanted)
         and (wanted.covered is None or (filler.name in covered()) is wanted.covered)
         and (not wanted.search or _mentions(filler, wanted.search))
+    )
+
+
+def _brazed_within(filler: Filler, wanted: FillersWanted) -> bool:
+    """A filler without a brazing range meets no condition on it."""
+    conditions = (wanted.brazed_at_c, wanted.brazing_min_c, wanted.brazing_max_c)
+    if all(condition is None for condition in conditions):
+        return True
+    if filler.brazing_range_c is None:
+        return False
+    at_c, least_c, most_c = conditions
+    low_c, high_c = filler.brazing_range_c
+    return (
+        (at_c is None or low_c <= at_c <= high_c)
+        and (least_c is None or low_c >= least_c)
+        and (most_c is None or high_c <= most_c)
     )
 
 

@@ -6,10 +6,11 @@ from dataclasses import dataclass, replace
 from functools import lru_cache
 from types import MappingProxyType
 
-from diagrams.alloys import Alloy, parse_alloy
+from diagrams.alloys import Alloy, alloy_from_designation, parse_alloy
 from diagrams.errors import DiagramsError, NotCovered, OutsideData
 from diagrams.files.catalog import catalog
 from diagrams.fillers import Filler
+from diagrams.questions.by_table import ByTable
 from diagrams.questions.melt import melter_for
 from diagrams.questions.melter import Melter
 from service.process.alloy_notes import check_tolerance, notes_on
@@ -68,6 +69,23 @@ def placed_or_known(asked: AlloyAsked, where: str) -> tuple[Placed | None, Alloy
 def placed_alloy(alloy: Alloy, field: str, leave_out_below_wt: float | None = None) -> Placed:
     """An alloy that comes of a computation; errors about it name `field`."""
     return _place(alloy, field, field, leave_out_below_wt)
+
+
+@lru_cache(maxsize=256)
+def printed(filler: Filler) -> Placed:
+    """A filler with nothing but what its standard prints, however well data may cover it."""
+    alloy = alloy_from_designation(filler.name)
+    melter = ByTable(alloy, filler)
+    return Placed(
+        alloy,
+        melter,
+        _process(melter),
+        frozenset(alloy.composition_wt),
+        alloy_shown(replace(alloy, limits_wt=_NO_LIMITS), {}, notes_on(alloy, melter, {})),
+        source_of(melter),
+        "designation",
+        "designation",
+    )
 
 
 def is_quick(asked: AlloyAsked | str) -> bool:

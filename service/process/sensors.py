@@ -29,6 +29,10 @@ class Sensor(Protocol):
     def told(self) -> str:
         """Where the tolerance comes from, to be put in brackets; empty if it was stated."""
 
+    @property
+    def top_c(self) -> float:
+        """The highest true temperature at which it has a tolerance."""
+
 
 @dataclass(frozen=True)
 class Stated:
@@ -36,6 +40,7 @@ class Stated:
 
     stated_c: float
     told: str = ""
+    top_c: float = float("inf")
 
     def tolerance_c(self, at_c: float) -> float:
         """The same everywhere."""
@@ -82,6 +87,11 @@ class SensorClass:
     def told(self) -> str:
         """Name, work, how it came here, edition of the table."""
         return f"{self.name}: {self.source.text}, {self.source.how}; {self.edition}"
+
+    @property
+    def top_c(self) -> float:
+        """Where the class ends."""
+        return self.ranges[-1].to_c
 
     def tolerance_c(self, at_c: float) -> float:
         """How far a reading may lie off at a temperature (°C), either way; OutsideData beyond the class."""

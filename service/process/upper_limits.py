@@ -115,19 +115,21 @@ def upper_limit(text: str, field: str) -> UpperKnown:
 
 def known_limits_shown() -> KnownLimitsAnswer:
     """All of them as answered."""
-    limits = [
-        KnownLimitShown(
-            key=limit.key,
-            kind=limit.kind,
-            subject=limit.subject,
-            limit_c=limit.limit_c,
-            note=limit.note or None,
-            reference=reference_shown(limit.source),
-        )
-        for limit in upper_limits().values()
-    ]
+    limits = [limit_shown(limit) for limit in upper_limits().values()]
     safety = safety_for(frozenset().union(*(limit.elements for limit in upper_limits().values())))
     return KnownLimitsAnswer(limits=limits, edition=EDITION, guidance=GUIDANCE, safety=safety)
+
+
+def limit_shown(limit: UpperKnown) -> KnownLimitShown:
+    """One of them as answered."""
+    return KnownLimitShown(
+        key=limit.key,
+        kind=limit.kind,
+        subject=limit.subject,
+        limit_c=limit.limit_c,
+        note=limit.note or None,
+        reference=reference_shown(limit.source),
+    )
 
 
 def _key(text: str) -> str:

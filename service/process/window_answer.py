@@ -14,6 +14,7 @@ from service.process.window_terms import EarlierJoint, UpperLimit
 from service.process.window_verdict import Collision
 from service.safety import safety_for
 from service.schemas.address import tolerance_of
+from service.schemas.shortlists import ShortlistQuestion
 from service.schemas.uncertainty import UncertaintyShown
 from service.schemas.uncertainty_words import ROOT_SUM_SQUARE, WORST_CASE
 from service.schemas.window import (
@@ -39,7 +40,7 @@ def window_of(question: WindowQuestion) -> WindowAnswer:
     return _shown(filler, demands, find_window(filler, demands))
 
 
-def demands_of(question: WindowQuestion, where: str = "") -> Demands:
+def demands_of(question: WindowQuestion | ShortlistQuestion, where: str = "") -> Demands:
     """What a body asks of a joint besides its filler; `where` is the path of the question, for errors.
 
     Raises InvalidInput for limits, and as `placed` does for earlier joints.

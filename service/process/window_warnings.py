@@ -50,14 +50,18 @@ def warnings_of(
     for joint in joints:
         found += _melting_at_once(joint)
     found += [Warned("alloy-note", text) for text in _noted([filler, *(j.subject for j in joints)])]
-    found += [Warned("base-metal-solidus", text) for text in _at_the_solidus(limits)]
     found += [Warned("printed-values", text) for text in _printed([filler, *(j.subject for j in joints)])]
     if data_compared:
         unknown = _not_compared([filler, *(j.subject for j in joints)])
         found += [Warned("data-not-compared", text) for text in unknown]
     found += [Warned("from-memory", text) for text in _remembered([filler, *(j.subject for j in joints)])]
-    found += [Warned("from-memory", text) for text in _remembered_limits(limits)]
-    return tuple(found)
+    return (*found, *warnings_of_limits(limits))
+
+
+def warnings_of_limits(limits: Sequence[UpperLimit]) -> list[Warned]:
+    """Those that have nothing to do with the filler."""
+    found = [Warned("base-metal-solidus", text) for text in _at_the_solidus(limits)]
+    return found + [Warned("from-memory", text) for text in _remembered_limits(limits)]
 
 
 def _melting_at_once(joint: EarlierJoint) -> Iterable[Warned]:

@@ -46,6 +46,16 @@ class FillersWanted(BaseModel):
     liquidus_max_c: float | None = Field(
         default=None, description="Printed liquidus not above this, °C: for a joint that must melt."
     )
+    brazed_at_c: float | None = Field(
+        default=None, description="A temperature, °C, within the brazing range that the table gives it."
+    )
+    brazing_min_c: float | None = Field(
+        default=None,
+        description="Brazing range not beginning below this, °C; without one a filler is left out.",
+    )
+    brazing_max_c: float | None = Field(
+        default=None, description="Brazing range not ending above this, °C; without one a filler is left out."
+    )
     covered: bool | None = Field(
         default=None,
         description="`true`: its melting is computed from stored data; `false`: the temperatures that its "

@@ -101,6 +101,17 @@ def test_the_hottest_true_temperature_undoes_the_tolerance(name, share):
         assert hottest_true_c(sensor, reading_c) == pytest.approx(true_c, abs=1e-9)
 
 
+def test_an_upper_bound_beyond_the_class_is_where_the_class_ends():
+    """Hotter than that no reading tells anything; 370 °C is the end of ASTM E230 type T."""
+    sensor = sensor_class("ASTM E230 type T special")
+    limits = (UpperLimit("pipe", 1083.0), UpperLimit("tape", 360.0))
+    demands = Demands(target_liquid_fraction=1.0, upper_limits=limits, budget=Budget(sensor))
+    pipe, tape = find_window(placed(TIN_LEAD), demands).upper_terms
+    assert pipe.value_c == pytest.approx(370 - 0.004 * 370)
+    assert tape.value_c == pytest.approx(360 - 0.004 * 360)
+    assert "ends at 370 °C" in pipe.uncertain[0].reason
+
+
 def test_a_bound_beyond_the_class_is_refused():
     with pytest.raises(OutsideData) as refused:
         window(Budget(sensor_class("IEC 60584 type B class 2")))

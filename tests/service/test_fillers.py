@@ -33,6 +33,15 @@ def test_without_conditions_all_are_listed(ask):
         ({"liquidus_max_c": "200"}, lambda f: f.liquidus_c <= 200),
         ({"liquidus_min_c": "900"}, lambda f: f.liquidus_c >= 900),
         ({"solidus_min_c": "217", "class": "solder"}, lambda f: f.solidus_c >= 217 and f.class_ == "solder"),
+        (
+            {"brazed_at_c": "700"},
+            lambda f: f.brazing_range_c and f.brazing_range_c[0] <= 700 <= f.brazing_range_c[1],
+        ),
+        ({"brazing_min_c": "1000"}, lambda f: f.brazing_range_c and f.brazing_range_c[0] >= 1000),
+        (
+            {"brazing_max_c": "800", "cadmium_free": "true"},
+            lambda f: f.brazing_range_c and f.brazing_range_c[1] <= 800 and not f.cadmium_bearing,
+        ),
         ({"search": "cup 18"}, lambda f: any("CuP 18" in d for d in (f.name, *f.designations.values()))),
     ],
 )
@@ -95,6 +104,8 @@ def test_lead_and_cadmium_bring_their_cautions(ask):
         ({"without": "Sn,"}, "without"),
         ({"contains": "Sn", "without": "sn"}, "without"),
         ({"liquidus_min_c": "300", "liquidus_max_c": "200"}, "liquidus_min_c"),
+        ({"brazing_min_c": "900", "brazing_max_c": "800"}, "brazing_min_c"),
+        ({"brazed_at_c": "hot"}, "brazed_at_c"),
         ({"liquidus_max_c": "nan"}, "liquidus_max_c"),
         ({"standard": "DIN 1707"}, "standard"),
         ({"class": "glue"}, "class"),
