@@ -82,14 +82,14 @@ class Sheet:
         self._text(beside, self.height - 27.0, subtitle, 8.5, FAINT)
         self._foot()
 
-    def plot(self) -> "Axes":
-        """The axes of the plot."""
+    def plot(self, above: float = 0.0, height: float | None = None) -> "Axes":
+        """The axes of the plot; or of a part of it that begins so far above its foot."""
         return self.figure.add_axes(
             (
                 LEFT / WIDTH,
-                self.bottom / self.height,
+                (self.bottom + above) / self.height,
                 PLOT_WIDTH / WIDTH,
-                self.plot_height / self.height,
+                (self.plot_height if height is None else height) / self.height,
             )
         )
 

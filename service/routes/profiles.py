@@ -3,12 +3,17 @@
 from typing import Annotated, Any
 
 from fastapi import Body, Query
+from fastapi.responses import Response
 
+from diagrams.figure_style import MEDIA_TYPES
+from service.process.profiles.check import checked_run
+from service.process.profiles.figure import draw_run
 from service.process.profiles.shown import profile_of
+from service.routes.figures import PICTURE
 from service.routes.recordings import TABLE, RecordingRoute
 from service.routes.strict import new_router
 from service.schemas.profile import ProfileQuestion
-from service.schemas.profile_address import ProfileAddress
+from service.schemas.profile_address import ProfileAddress, ProfileFigureAddress
 from service.schemas.profile_verdict import ProfileAnswer
 
 router = new_router("Checking runs", route_class=RecordingRoute)
@@ -86,3 +91,22 @@ def check_profile(
     not depend on the sampling.
     """
     return profile_of(question)
+
+
+@router.post(
+    "/profile-checks/figure",
+    summary="Picture of a recorded run",
+    openapi_extra=BODIES,
+    response_class=Response,
+    responses=PICTURE,
+)
+def draw_profile(
+    question: Annotated[ProfileQuestion, Body(openapi_examples=EXAMPLES)],
+    address: Annotated[ProfileFigureAddress, Query()],
+) -> Response:
+    """Draw the curves of a run over its window, the melting range and the liquid fraction.
+
+    The question is that of `/v1/profile-checks`, as JSON or as a table.
+    """
+    picture = draw_run(checked_run(question), address.format)
+    return Response(picture, media_type=MEDIA_TYPES[address.format])

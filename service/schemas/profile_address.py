@@ -4,6 +4,7 @@ from typing import Annotated
 
 from pydantic import BaseModel, ConfigDict, Field
 
+from diagrams.figure_style import PictureFormat
 from service.schemas.address import LONGEST_LIST, TOLERANCE
 from service.schemas.profile import CELSIUS, CLASSIFICATION, STANDARD_PROFILE
 from service.schemas.uncertainty import (
@@ -74,3 +75,9 @@ class ProfileAddress(BaseModel):
         examples=["bridge gaps,leave out jumps"],
     )
     readings_are_celsius: bool | None = Field(default=None, description=ONLY_WITH_A_TABLE + CELSIUS)
+
+
+class ProfileFigureAddress(ProfileAddress):
+    """The same for the picture of a run."""
+
+    format: PictureFormat = Field(default="png", description="`png` or `svg`, also with JSON.")
