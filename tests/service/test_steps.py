@@ -59,7 +59,9 @@ def test_windows_are_those_of_the_window_call_and_pass_the_profile_check(ask):
                 "time_s": [0, 100, 200],
                 "sensors": [{"name": "s", "temperature_c": [25, peak, 25]}],
             }
-            assert ask("POST", "/v1/profile-checks", json=run).json()["verdict"] == "pass"
+            judged = ask("POST", "/v1/profile-checks", json=run).json()
+            assert judged["verdict"] == "pass"
+            assert judged["tightest"]["margin"] == 0
 
 
 def test_two_of_one_eutectic_collide_and_the_shelf_helps(ask):

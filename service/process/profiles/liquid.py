@@ -27,13 +27,26 @@ def fractions_at(curve: Points, temperatures_c: Floats) -> Floats:
 
 def liquid_along(trace: Trace, curve: Points) -> tuple[tuple[float, float], ...]:
     """(s, fraction) along a record, as few points as are true to TRUE_TO between straight lines."""
-    times, fractions = _everything(trace, curve)
+    times, fractions = _everything(_where_it_changes(trace, curve), curve)
     lasts = trace.end_s - trace.start_s
     bends = np.ones(len(fractions), dtype=np.bool_)
     bends[1:-1] = (fractions[1:-1] != fractions[:-2]) | (fractions[1:-1] != fractions[2:])
     points = np.column_stack([(times[bends] - trace.start_s) / lasts, fractions[bends]])
     line = LineString(points).simplify(TRUE_TO, preserve_topology=False)
     return tuple((trace.start_s + x * lasts, f) for x, f in line.coords)
+
+
+def _where_it_changes(trace: Trace, curve: Points) -> Trace:
+    """The record without samples between two others that are as wholly solid, or liquid, as they are."""
+    t, f = np.array(curve).T
+    low_c, high_c = float(t[f <= f[0]].max()), float(t[f >= f[-1]].min())
+    state = (trace.temperature_c >= low_c).astype(np.int8) + (trace.temperature_c > high_c)
+    kept = state == 1
+    changes = state[1:] != state[:-1]
+    kept[1:] |= changes
+    kept[:-1] |= changes
+    kept[[0, -1]] = True
+    return Trace(trace.name, trace.time_s[kept], trace.temperature_c[kept])
 
 
 def _everything(trace: Trace, curve: Points) -> tuple[Floats, Floats]:

@@ -61,13 +61,15 @@ def peak(trace: Trace) -> Moment:
 
 def time_above(trace: Trace, level_c: float, *, or_at: bool = False) -> float:
     """Seconds above a level; with `or_at` stretches lying exactly on it count too."""
-    over = trace.temperature_c - level_c
-    up = np.maximum(over, 0.0)
-    size = np.abs(over)
-    both = size[:-1] + size[1:]
+    there = trace.temperature_c >= level_c
+    k = np.flatnonzero(there[:-1] | there[1:])  # the lines that reach it; most of a run does not
+    start, end = trace.temperature_c[k] - level_c, trace.temperature_c[k + 1] - level_c
+    both = np.abs(start) + np.abs(end)
     on_it = 1.0 if or_at else 0.0
-    share = np.where(both > 0.0, (up[:-1] + up[1:]) / np.where(both > 0.0, both, 1.0), on_it)
-    return float((np.diff(trace.time_s) * share).sum())  # no dot product: it would call up threads
+    up = np.maximum(start, 0.0) + np.maximum(end, 0.0)
+    share = np.where(both > 0.0, up / np.where(both > 0.0, both, 1.0), on_it)
+    lasts = trace.time_s[k + 1] - trace.time_s[k]
+    return float((lasts * share).sum())  # no dot product: it would call up threads
 
 
 def time_within(trace: Trace, low_c: float, high_c: float) -> float:
@@ -110,11 +112,13 @@ def rates(trace: Trace, over_s: float) -> Rates | None:
     last_start = trace.end_s - over_s
     if last_start < trace.start_s:
         return None
-    ends = trace.time_s - over_s
-    starts = np.concatenate(
-        [trace.time_s[trace.time_s <= last_start], ends[ends >= trace.start_s], [last_start]]
-    )
-    change = (trace.at(starts + over_s) - trace.at(starts)) / over_s
+    times, readings = trace.time_s, trace.temperature_c
+    begins = times[times <= last_start]  # spans that begin at a sample
+    ends = times[times - over_s >= trace.start_s]  # and those that end at one, the last of all among them
+    after = trace.at(begins + over_s) - readings[: len(begins)]
+    before = readings[len(times) - len(ends) :] - trace.at(ends - over_s)
+    starts = np.concatenate([begins, ends - over_s])
+    change = np.concatenate([after, before]) / over_s
     return Rates(_steepest(starts, change, trace.start_s), _steepest(starts, -change, trace.start_s))
 
 
