@@ -20,6 +20,7 @@ from service.schemas.base import Answer, AnswerModel
 
 log = logging.getLogger("meltband")
 MEDIA_TYPE = "application/problem+json"
+ASKED_BODY = "meltband.body"  # in the scope: the bytes of a body, whose cautions an error brings
 MOST_ERRORS = 50
 
 
@@ -218,8 +219,8 @@ def _explain(item: Mapping[str, Any]) -> FieldError:
 def _elements_asked_about(scope: Mapping[str, Any]) -> frozenset[str]:
     """What the request mentions; what was not read, or could not be, may speak of lead."""
     address = f"{scope.get('path', '')}?{scope.get('query_string', b'').decode('latin-1')}"
-    mentioned = elements_mentioned(address, scope.get("meltband.body", b""))
-    unread = "meltband.body" not in scope and _brings_body(scope)
+    mentioned = elements_mentioned(address, scope.get(ASKED_BODY, b""))
+    unread = ASKED_BODY not in scope and _brings_body(scope)
     return mentioned | {"Pb"} if unread else mentioned
 
 

@@ -1,5 +1,6 @@
 """Whether a recorded run stayed within its window and limits."""
 
+import json
 from typing import Annotated, Any
 
 from fastapi import Body, Query
@@ -10,7 +11,7 @@ from service.process.profiles.check import checked_run
 from service.process.profiles.figure import draw_run
 from service.process.profiles.shown import profile_of
 from service.routes.figures import PICTURE
-from service.routes.recordings import TABLE, RecordingRoute
+from service.routes.recordings import PARTS, QUESTION_PART, TABLE, TABLE_PART, RecordingRoute
 from service.routes.strict import new_router
 from service.schemas.profile import ProfileQuestion
 from service.schemas.profile_address import ProfileAddress, ProfileFigureAddress
@@ -19,7 +20,7 @@ from service.schemas.profile_verdict import ProfileAnswer
 router = new_router("Checking runs", route_class=RecordingRoute)
 
 ADDRESSES = ("/v1/profile-checks", "/v1/profile-checks/figure")
-EXAMPLES = {
+EXAMPLES: dict[str, Any] = {
     "reflow": {
         "summary": "A board of the Ketterbeck works in its reflow oven, two joints and a relay (invented)",
         "value": {
@@ -73,8 +74,41 @@ time,Corner joint,Ground joint
 240,120,124
 300,55,58
 """
+_QUESTION = {key: value for key, value in EXAMPLES["reflow"]["value"].items() if key != "time_s"} | {
+    "sensors": [{"name": "Relay", "on": "part", "limit_c": 230}]
+}
+PARTS_EXAMPLE = {
+    QUESTION_PART: json.dumps(_QUESTION),
+    TABLE_PART: "time;Corner joint;Relay\n0;24;24\n50;118;121\n140;161;164\n175;212,5;217\n190;213;215\n"
+    "240;120;118\n300;55;53\n",
+}
 BODIES: dict[str, Any] = {
-    "requestBody": {"content": {TABLE: {"schema": {"type": "string"}, "example": TABLE_EXAMPLE}}}
+    "requestBody": {
+        "content": {
+            TABLE: {"schema": {"type": "string"}, "example": TABLE_EXAMPLE},
+            PARTS: {
+                "schema": {
+                    "type": "object",
+                    "required": [QUESTION_PART, TABLE_PART],
+                    "properties": {
+                        QUESTION_PART: {
+                            "type": "string",
+                            "contentMediaType": "application/json",
+                            "description": "The question as with JSON, without columns; `sensors` may say of "
+                            "a column by its `name` where the sensor sits (`on`, `limit_c`).",
+                        },
+                        TABLE_PART: {
+                            "type": "string",
+                            "contentMediaType": TABLE,
+                            "description": "The table, as a file or as text.",
+                        },
+                    },
+                    "additionalProperties": False,
+                },
+                "example": PARTS_EXAMPLE,
+            },
+        }
+    }
 }
 
 
@@ -87,7 +121,8 @@ def check_profile(
 
     Send JSON; or a table (`text/csv`: time in the first column, one sensor a column, names in the first
     line; comma, semicolon or tab, decimal point or comma) with the rest in the address line, or in a first
-    line that begins with `#?`. Everything is taken as straight lines between samples, so the verdict does
+    line that begins with `#?`; or both as `multipart/form-data`, the question as the part `question`, the
+    table as the part `table`. Everything is taken as straight lines between samples, so the verdict does
     not depend on the sampling.
     """
     return profile_of(question)
@@ -106,7 +141,7 @@ def draw_profile(
 ) -> Response:
     """Draw the curves of a run over its window, the melting range and the liquid fraction.
 
-    The question is that of `/v1/profile-checks`, as JSON or as a table.
+    The question is that of `/v1/profile-checks`, in any of its forms.
     """
     picture = draw_run(checked_run(question), address.format)
     return Response(picture, media_type=MEDIA_TYPES[address.format])

@@ -11,7 +11,7 @@ from starlette.requests import Request
 from starlette.responses import Response
 
 from service.json_body import UnreadableJson, UnusableObject, read_json
-from service.problems import MOST_ERRORS, FieldError, Refusal, counted, field_error
+from service.problems import ASKED_BODY, MOST_ERRORS, FieldError, Refusal, counted, field_error
 from service.routes.plain_values import Kind, complaint_about, kind_of
 
 PARSED = "meltband.parsed"  # where a body that was read before waits in the scope
@@ -28,22 +28,27 @@ class StrictRequest(Request):
         if PARSED in self.scope:
             return self.scope[PARSED]
         body = await self.body()
-        try:
-            if len(body) > _LONG_BODY:
-                return await anyio.to_thread.run_sync(read_json, body)
-            return read_json(body)
-        except UnusableObject as error:
-            named = field_error("body", error.path, str(error), error.remedy)
-            raise Refusal("invalid-request", f"{error} {error.remedy}", [named]) from None
-        except UnreadableJson as error:
-            whole = field_error("body", (), str(error), "Send one JSON document in UTF-8.")
-            raise Refusal("unreadable-body", str(error), [whole]) from None
+        if len(body) > _LONG_BODY:
+            return await anyio.to_thread.run_sync(parsed_json, body)
+        return parsed_json(body)
+
+
+def parsed_json(body: bytes) -> Any:
+    """Read JSON strictly; a Refusal names the place."""
+    try:
+        return read_json(body)
+    except UnusableObject as error:
+        named = field_error("body", error.path, str(error), error.remedy)
+        raise Refusal("invalid-request", f"{error} {error.remedy}", [named]) from None
+    except UnreadableJson as error:
+        whole = field_error("body", (), str(error), "Send one JSON document in UTF-8.")
+        raise Refusal("unreadable-body", str(error), [whole]) from None
 
 
 class StrictRoute(APIRoute):
     """A route that refuses what it does not know instead of passing over it."""
 
-    also_takes: str | None = None  # a media type beside JSON
+    also_takes: tuple[str, ...] = ()  # media types beside JSON
 
     def get_route_handler(self) -> Callable[[Request], Coroutine[Any, Any, Response]]:
         """Wrap the framework's handler with the checks."""
@@ -90,12 +95,12 @@ def refuse_odd_parameters(request: Request, known: Mapping[str, Kind | None]) ->
         raise Refusal("invalid-request", counted(errors[0].detail, len(errors)), shown)
 
 
-async def refuse_other_bodies(request: Request, also: str | None = None) -> None:
+async def refuse_other_bodies(request: Request, also: tuple[str, ...] = ()) -> None:
     """Refuse a body that is not labelled as plain JSON in UTF-8, before anything tries to read it.
 
-    `also` is another media type that is taken.
+    `also` are other media types that are taken.
     """
-    wanted = "Content-Type: application/json" + (f" or {also}" if also else "")
+    wanted = "Content-Type: " + " or ".join(("application/json", *also))
     kind, _, rest = request.headers.get("content-type", "").partition(";")
     kind = kind.strip().lower()
     coding = request.headers.get("content-encoding", "identity").strip().lower()
@@ -108,8 +113,8 @@ async def refuse_other_bodies(request: Request, also: str | None = None) -> None
             f"The body is labelled as {charset}; send UTF-8, with {wanted}.",
         )
     # an error answer takes its cautions from what was asked about
-    request.scope["meltband.body"] = body = await request.body()
-    if kind in ("application/json", also) or (kind.startswith("application/") and kind.endswith("+json")):
+    request.scope[ASKED_BODY] = body = await request.body()
+    if kind in ("application/json", *also) or (kind.startswith("application/") and kind.endswith("+json")):
         return
     if body:
         sent = f"The body is labelled “{kind}”" if kind else "The body has no Content-Type"

@@ -1,5 +1,6 @@
-"""A table and its address line as the body they stand for."""
+"""A table, with its address line or with a question beside it, as the body they stand for."""
 
+from collections.abc import Mapping
 from typing import Any
 
 import numpy as np
@@ -48,10 +49,46 @@ def body_of(address: ProfileAddress, table: str) -> dict[str, Any]:
     if address.repairs is not None:
         body["repairs"] = _repairs(address.repairs)
     body["alloy"] = _alloy(address.alloy, address.tolerance_wt)
+    return body | _columns(table)
+
+
+def body_with(question: Mapping[str, Any], table: str) -> dict[str, Any]:
+    """The columns of the table as sensors of a question, which may say of each by its name where it sits.
+
+    Raises InvalidInput for a question that brings columns of its own or speaks of sensors the table lacks.
+    """
+    if "time_s" in question:
+        raise InvalidInput(
+            "The times stand in the table.", field="time_s", remedy="Leave time_s out of the question."
+        )
+    columns = _columns(table)
+    named = {sensor["name"]: sensor for sensor in columns["sensors"]}
+    asked = question.get("sensors", [])
+    if not isinstance(asked, list) or not all(isinstance(about, dict) for about in asked):
+        return dict(question)  # the schema says what is wrong with it
+    for k, about in enumerate(asked):
+        for column in ("time_s", "temperature_c"):
+            if column in about:
+                raise InvalidInput(
+                    "The columns stand in the table.",
+                    field=f"sensors.{k}.{column}",
+                    remedy="Say of a sensor here only what the table cannot: name, on, limit_c.",
+                )
+        sensor = named.pop(about.get("name"), None) if isinstance(about.get("name"), str) else None
+        if sensor is None:
+            raise InvalidInput(
+                f"The table has no column “{str(about.get('name'))[:60]}”, or it stands here twice.",
+                field=f"sensors.{k}.name",
+                remedy=f"Name a column: {', '.join(one['name'] for one in columns['sensors'][:20])}.",
+            )
+        sensor.update(about)
+    return {**question, **columns}
+
+
+def _columns(table: str) -> dict[str, Any]:
     channels = channels_from(table)
-    body["time_s"] = channels[0].time_s.tolist()
-    body["sensors"] = [{"name": c.name, "temperature_c": _plain(c.temperature_c)} for c in channels]
-    return body
+    sensors = [{"name": c.name, "temperature_c": _plain(c.temperature_c)} for c in channels]
+    return {"time_s": channels[0].time_s.tolist(), "sensors": sensors}
 
 
 def _alloy(text: str, tolerance_text: str | None) -> dict[str, Any]:
