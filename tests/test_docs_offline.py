@@ -81,13 +81,26 @@ def run_operation(page: Page, operation_id: str, values: dict[str, str]):
     for name, value in values.items():
         block.locator(f'tr[data-param-name="{name}"] input').fill(value)
     block.get_by_role("button", name="Execute").click()
-    expect(block.locator(".live-responses-table .response-col_status").last).to_contain_text("200")
+    answered = block.locator(".live-responses-table .response-col_status").last
+    expect(answered).to_contain_text("200", timeout=60_000)
     return block
 
 
 def test_an_operation_can_be_tried(visit):
     block = run_operation(visit.page, "safety", {"alloy": "Sn63Pb37"})
     expect(block.locator(".live-responses-table")).to_contain_text("Lead harms nerves")
+
+
+def test_the_picture_of_a_run_shows_in_the_page(visit):
+    block = run_operation(visit.page, "draw_profile", {})
+    image = block.locator(".live-responses-table img")
+    expect(image).to_be_visible()
+    assert image.evaluate("picture => picture.naturalWidth") > 800
+
+
+def test_a_shortlist_can_be_tried(visit):
+    block = run_operation(visit.page, "make_shortlist", {})
+    expect(block.locator(".live-responses-table")).to_contain_text("ranked_count")
 
 
 def test_nothing_was_asked_of_anybody_else_and_nothing_went_wrong(visit):

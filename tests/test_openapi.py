@@ -96,12 +96,17 @@ def test_every_example_is_answered(ask, method, path, kind, value):
         assert answer.json()["safety"]["notes"]
 
 
-@pytest.mark.parametrize(("method", "path", "operation"), [o for o in OPERATIONS if o[0] == "get"])
-def test_an_address_filled_with_its_examples_is_answered(ask, method, path, operation):
-    filled = {p["name"]: p["example"] for p in operation.get("parameters", []) if "example" in p}
-    in_path = {p["name"]: filled.pop(p["name"]) for p in operation.get("parameters", []) if p["in"] == "path"}
-    answer = ask(method.upper(), path.format(**in_path), params=filled)
-    assert answer.status_code == 200, answer.text
+@pytest.mark.parametrize(("method", "path", "operation"), OPERATIONS, ids=lambda o: str(o)[:40])
+def test_what_the_page_fills_in_is_answered(ask, method, path, operation):
+    """A page puts examples and defaults into the address, beside the first example of the body."""
+    parameters = operation.get("parameters", [])
+    filled = {p["name"]: p.get("example", p["schema"].get("default")) for p in parameters}
+    in_path = {p["name"]: filled.pop(p["name"]) for p in parameters if p["in"] == "path"}
+    filled = {name: value for name, value in filled.items() if value is not None}
+    body = operation.get("requestBody", {}).get("content", {}).get("application/json", {}).get("examples")
+    sent = {"json": next(iter(body.values()))["value"]} if body else {}
+    answer = ask(method.upper(), path.format(**in_path), params=filled, **sent)
+    assert answer.status_code in (200, 201), answer.text
 
 
 def test_no_parameter_is_said_to_take_null():

@@ -15,8 +15,7 @@ from service.schemas.window import WindowAddress
 
 def budget_of(asked: BudgetAsked | WindowAddress) -> Budget:
     """The budget asked for; InvalidInput where one uncertainty is given in two ways."""
-    given = asked.model_fields_set
-    if asked.count_data and "data_tolerance_c" in given:
+    if asked.count_data and asked.data_tolerance_c > 0.0:
         raise _twice("data_tolerance_c", "count_data")
     return Budget(
         sensor=_sensor(asked),
@@ -39,7 +38,7 @@ def budget_shown(budget: Budget, spread_c: float, combined: Mapping[Combination,
 def _sensor(asked: BudgetAsked | WindowAddress) -> Sensor:
     if asked.sensor_class is None:
         return Stated(asked.sensor_tolerance_c)
-    if "sensor_tolerance_c" in asked.model_fields_set:
+    if asked.sensor_tolerance_c > 0.0:
         raise _twice("sensor_tolerance_c", "sensor_class")
     return sensor_class(asked.sensor_class)
 

@@ -71,8 +71,8 @@ class ProfileAddress(BaseModel):
         default=None,
         min_length=1,
         max_length=500,
-        description=ONLY_WITH_A_TABLE + "Repairs that may be made, with commas between.",
-        examples=["bridge gaps,leave out jumps"],
+        description=ONLY_WITH_A_TABLE + "Repairs that may be made, with commas between: `bridge gaps,leave "
+        "out jumps`.",
     )
     readings_are_celsius: bool | None = Field(default=None, description=ONLY_WITH_A_TABLE + CELSIUS)
 

@@ -96,7 +96,7 @@ def test_an_open_window_and_printed_values_say_what_is_not_known(ask):
 @pytest.mark.parametrize(
     ("wrong", "field"),
     [
-        ({"sensor_class": CLASS, "sensor_tolerance_c": 0}, "sensor_class"),
+        ({"sensor_class": CLASS, "sensor_tolerance_c": 0.1}, "sensor_class"),
         ({"sensor_class": "type K"}, "sensor_class"),
         ({"sensor_class": "IEC 60584 type B class 2"}, "sensor_class"),
         ({"count_data": True, "data_tolerance_c": 1}, "count_data"),
