@@ -22,7 +22,7 @@ _FAMILIES = (
     ("beryllium copper", "bronze"),
     ("phosphor bronze", "bronze"),
     ("brass", "brass"),
-    ("nickel silver", "brass"),
+    ("nickel silver", "copper-nickel"),  # about 18 % of nickel: what bars phosphorus there bars it here
     ("low-carbon steel", "iron"),
     ("grey cast iron", "cast-iron"),
     ("stainless", "stainless"),

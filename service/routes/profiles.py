@@ -93,8 +93,8 @@ BODIES: dict[str, Any] = {
                     "properties": {
                         QUESTION_PART: {
                             "type": "string",
-                            "contentMediaType": "application/json",
-                            "description": "The question as with JSON, without columns; `sensors` may say of "
+                            "examples": [PARTS_EXAMPLE[QUESTION_PART]],
+                            "description": "JSON: the question, without columns; `sensors` may say of "
                             "a column by its `name` where the sensor sits (`on`, `limit_c`).",
                         },
                         TABLE_PART: {

@@ -59,7 +59,10 @@ class SensorShown(AnswerModel):
 
 
 class LevelsShown(AnswerModel):
-    """The temperatures of the alloy that the demands refer to, °C."""
+    """The temperatures of the alloy that the demands refer to, °C.
+
+    Readings are held against them as they are; the uncertainty budget counts in the window of the peak.
+    """
 
     solidus_c: float = Field(description="At the nominal composition.")
     liquidus_c: float = Field(description="At the nominal composition.")

@@ -24,7 +24,7 @@ def test_the_families_are_the_right_ones():
     families = {base.key: family_of(base) for base in BASES}
     assert families["cu-ni-c70600-90-10"] == "copper-nickel"
     assert families["n04400-ni-30cu"] == families["ni-200-n02200"] == "nickel"
-    assert families["nickel-silver-c75200"] == "brass"  # copper, zinc and nickel; no silver in it
+    assert families["nickel-silver-c75200"] == "copper-nickel"  # with zinc; no silver in it
     assert families["al-6061"] == "aluminium"
     assert families["ag-fine"] == "silver"
 
