@@ -5,6 +5,9 @@ The drawing library is imported on first use: it takes half a second, and most q
 
 import io
 import re
+import warnings
+from collections.abc import Iterator
+from contextlib import contextmanager
 from functools import cache, lru_cache
 from importlib import import_module
 from threading import Lock
@@ -40,7 +43,7 @@ _GREEK = {"alpha": "α", "beta": "β", "gamma": "γ", "delta": "δ", "epsilon": 
 _SUBSCRIPTS = str.maketrans("0123456789", "₀₁₂₃₄₅₆₇₈₉")
 _FAMILY = "DejaVu Sans"  # comes with the drawing library, so that pictures look alike everywhere
 _MEASURED_AT = 100.0
-_drawing = Lock()
+_drawing = Lock()  # the library keeps fonts and settings in common
 
 
 def shown(text: str) -> str:
@@ -63,6 +66,14 @@ def percent_of_mass(fraction: float) -> str:
     if fraction <= 0.0:
         return "all solid"
     return f"{100.0 * fraction:.1f} % of the mass is liquid"
+
+
+@contextmanager
+def _any_script() -> Iterator[None]:
+    """A script that the font lacks is drawn as boxes, without a warning; in an SVG it stays text."""
+    with warnings.catch_warnings():
+        warnings.filterwarnings("ignore", message="Glyph .* missing from font")
+        yield
 
 
 @cache
@@ -109,7 +120,7 @@ def to_bytes(figure: "Figure", form: PictureFormat, title: str) -> bytes:
     """The finished picture with its title for screen readers; the same figure gives the same bytes."""
     sheet = io.BytesIO()
     metadata = {"Title": title, **({"Date": None, "Creator": None} if form == "svg" else {"Software": None})}
-    with _drawing:  # the library keeps fonts and settings in common
+    with _drawing, _any_script():
         figure.savefig(sheet, format=form, metadata=metadata)
     return sheet.getvalue()
 
@@ -120,7 +131,7 @@ def text_width(text: str, size: float, bold: bool = False) -> float:
     _library()
     fonts = import_module("matplotlib.font_manager")
     weight = "bold" if bold else "normal"
-    with _drawing:
+    with _drawing, _any_script():
         font = fonts.get_font(fonts.findfont(fonts.FontProperties(family=_FAMILY, weight=weight)))
         font.set_size(_MEASURED_AT, 72)
         font.set_text(text, 0.0, flags=import_module("matplotlib.ft2font").LoadFlags.NO_HINTING)

@@ -32,7 +32,10 @@ _TEXTS: Mapping[str, Complaint] = {
     "multiple_of": ("must be a multiple of {multiple_of}.", "Give a multiple of {multiple_of}."),
     "too_short": ("has {actual_length} entries, too few.", "Give at least {min_length}."),
     "too_long": ("has too many entries.", "Give at most {max_length}."),
-    "string_too_short": ("is too short.", "Give at least {min_length} characters."),
+    "string_too_short": (
+        "is too short.",
+        "Give more text; the least is {min_length}, counted in characters.",
+    ),
     "string_too_long": ("is too long.", "Give at most {max_length} characters."),
     "string_pattern_mismatch": ("does not have the right form.", "Match the pattern {pattern}."),
     "literal_error": ("is none of the choices.", "Choose {expected}."),
@@ -50,5 +53,7 @@ def complain(error: Mapping[str, Any], field: str) -> Complaint:
     kind = error["type"]
     if kind == "float_type" and isinstance(error["input"], int) and not isinstance(error["input"], bool):
         kind = "finite_number"  # a whole number beyond what a float can hold
+    if kind == "int_type" and isinstance(error["input"], float):
+        kind = "int_from_float"
     wrong, remedy = _TEXTS.get(kind, ("cannot be used: " + str(error["msg"]) + ".", ""))
     return f"“{field}” {wrong.format_map(context)}", remedy.format_map(context)

@@ -18,7 +18,7 @@ TABLES = {
     "process_limits.csv": 196,
     "sensor_tolerances.csv": 28,
     "safety_facts.csv": 66,
-    "suitability.csv": 22,
+    "suitability.csv": 25,
 }
 TRUTHS = {"invariants_assessed": 65, "invariants_handbook": 138, "lever_rule": 8, "practice_invariants": 8}
 

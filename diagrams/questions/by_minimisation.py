@@ -12,6 +12,7 @@ from diagrams.questions.many_edge import Edge, Passed, same_change
 from diagrams.questions.many_place import check_served, place_many, prepared
 from diagrams.questions.many_state import State, StateFinder
 from diagrams.questions.melter import Melter, Method, Span, jump_at, liquid_up_to
+from diagrams.questions.stored_spans import End, stored_span
 from diagrams.questions.tolerance_box import Composition, box_of, span_over
 from diagrams.sources import Source
 
@@ -29,7 +30,8 @@ class ByMinimisation(Melter):
         "element to another from the best of them, in ever smaller amounts"
     )
 
-    def __init__(self, alloy: Alloy) -> None:
+    def __init__(self, alloy: Alloy, *, keeping: bool = True) -> None:
+        """`keeping` says whether spans that are stored are taken from there."""
         place = place_many(alloy)
         self.alloy, self.place = alloy, place
         self.data_id, self.edition = place.file.id, place.file.edition
@@ -38,6 +40,15 @@ class ByMinimisation(Melter):
         self._box = box_of(alloy)
         wide = len(self._box.corners) > 1
         self.limits_wt = {el: pair for el, pair in alloy.limits_wt.items() if wide and el in alloy.elements}
+        kept: tuple[tuple[tuple[str, float], End], ...] = (
+            (("kept", 0.0), "solidus"),
+            (("needed", 1.0), "liquidus"),
+        )
+        self._stored = {
+            key: span
+            for key, end in kept
+            if keeping and (span := stored_span(alloy, self.data_id, self.edition, end)) is not None
+        }
         self._lock = threading.RLock()
         self._curves: dict[tuple[tuple[str, float], ...], FollowedCurve] = {}
         self._spans: dict[tuple[str, float], Span] = {}
@@ -46,6 +57,13 @@ class ByMinimisation(Melter):
     def effort(self) -> int:
         """Corners of the tolerance times elements less one; about a second each, the first time."""
         return len(self._box.corners) * (len(self.alloy.composition_wt) - 1)
+
+    @property
+    def range_c(self) -> tuple[float, float]:
+        """From what is stored, without the curve between."""
+        if not self._stored:
+            return super().range_c
+        return self.kept(0.0).nominal, self.needed(1.0).nominal
 
     @cached_property
     def finder(self) -> StateFinder:
@@ -95,12 +113,16 @@ class ByMinimisation(Melter):
         return self._span(key, lambda: span_over(self._box, reached, GAIN_FRACTION)).highest
 
     def needed(self, fraction: float) -> Span:
-        """By search over the tolerance."""
+        """By search over the tolerance, unless it is stored."""
+        if (span := self._stored.get(("needed", fraction))) is not None:
+            return span
         nominal_c = self.curve.stays_above(fraction)
         return self._edges(("needed", fraction), nominal_c, lambda liquid: liquid >= fraction)
 
     def kept(self, fraction: float) -> Span:
-        """By search over the tolerance."""
+        """By search over the tolerance, unless it is stored."""
+        if (span := self._stored.get(("kept", fraction))) is not None:
+            return span
         nominal_c = self.curve.first_exceeds(fraction)
         return self._edges(("kept", fraction), nominal_c, lambda liquid: liquid > fraction)
 

@@ -6,6 +6,7 @@ The spread between coldest and hottest joint is no error but a difference that i
 enters whole, either way.
 """
 
+import math
 from dataclasses import dataclass
 
 from diagrams.questions.melter import Melter, Span
@@ -45,20 +46,14 @@ class Budget:
         return self._sensor(true_c, "above")
 
     def read_low(self, true_c: float) -> Part:
-        """By how much a reading may lie below a true temperature.
+        """By how much a reading may lie below a true temperature; beyond the end of its class, below that."""
+        return self._sensor(min(true_c, self.sensor.top_c), "below")
 
-        Hotter than its class ends a sensor tells nothing: readings have to stay under that end.
-        """
+    @property
+    def highest_reading_c(self) -> float:
+        """The highest reading that tells anything: at the end of its class a sensor may read low."""
         top_c = self.sensor.top_c
-        if true_c <= top_c:
-            return self._sensor(true_c, "below")
-        at_top = self._sensor(top_c, "below")
-        beyond_c = true_c - top_c
-        return Part(
-            SENSOR,
-            beyond_c + at_top.value_c,
-            f"The class of the sensor ends at {top_c:g} °C, {beyond_c:.1f} °C lower. {at_top.reason}",
-        )
+        return top_c if math.isinf(top_c) else top_c - self.sensor.tolerance_c(top_c)
 
     def _sensor(self, true_c: float, side: str) -> Part:
         size_c, told = self.sensor.tolerance_c(true_c), self.sensor.told

@@ -2,7 +2,8 @@
 
 The evidence is the comparison with printed melting ranges. A filler that the table prints is judged by its
 own row, and by the median of its system where that row agrees by luck; any other alloy by nine tenths of its
-system's rows; a system without rows by nine tenths of all of its kind.
+system's rows, by the worst of fewer than five; a system without rows by nine tenths of all of its kind.
+Rows that went into a fit flatter the data, and the reason tells how many did.
 """
 
 import statistics
@@ -13,6 +14,7 @@ from diagrams.comparison import Compared, compared, comparison_edition
 from diagrams.questions.melter import Melter
 
 SHARE = 0.9
+FEW = 5  # rows that make no nine tenths
 ROUNDED_C = 0.5  # prints are whole degrees: no row can prove better than this
 PRINTED = "standard table"
 
@@ -31,22 +33,26 @@ def data_uncertainty(melter: Melter, fraction: float) -> DataUncertainty:
 
     0 is judged by the solidus, 1 by the liquidus, what lies between by the greater of both.
     """
-    if melter.method == PRINTED:
+    filler = melter.alloy.filler
+    printed = [row for row in compared() if filler is not None and row.filler == filler.name]
+    if melter.method == PRINTED and not printed:
         reason = "Printed temperatures stand in for data; how far they are off was never compared: 0 counted."
         return DataUncertainty(0.0, reason, known=False)
-    own = [row for row in compared() if row.data_id == melter.data_id]
-    filler = melter.alloy.filler
-    printed = [row for row in own if filler is not None and row.filler == filler.name]
+    data_id = printed[0].data_id if printed else melter.data_id
+    own = [row for row in compared() if row.data_id == data_id]
+    alike = [row for row in compared() if _is_many(row.data_id) is _is_many(data_id)]
+    ends = ("solidus",) if fraction <= 0.0 else ("liquidus",) if fraction >= 1.0 else ("solidus", "liquidus")
     if printed:
-        sizes = {e: max(*_off(printed, e), statistics.median(_off(own, e))) for e in _ends(fraction)}
-        based = f"computed less printed for this filler, at least the median of {_counted(own)}"
+        sizes = {end: max(*_off(printed, end), statistics.median(_off(own, end))) for end in ends}
+        based = f"computed less printed for this filler, at least the median of {_counted(own)} of these data"
+    elif len(own) >= FEW:
+        sizes = {end: _nine_tenths(_off(own, end)) for end in ends}
+        based = f"nine tenths of {_counted(own)} of these data lie within it"
     elif own:
-        sizes = {end: _nine_tenths(_off(own, end)) for end in _ends(fraction)}
-        based = f"nine tenths of {_counted(own)} computed from the same data lie within it"
+        sizes = {end: max(*_off(own, end), statistics.median(_off(alike, end))) for end in ends}
+        based = f"the worst of {_counted(own)} of these data, at least the median of {_counted(alike)} of all"
     else:
-        many = _is_many(melter.data_id)
-        alike = [row for row in compared() if _is_many(row.data_id) is many]
-        sizes = {end: _nine_tenths(_off(alike, end)) for end in _ends(fraction)}
+        sizes = {end: _nine_tenths(_off(alike, end)) for end in ends}
         based = f"no print checks these data; nine tenths of {_counted(alike)} of other data lie within it"
     end, size_c = max(sizes.items(), key=lambda item: item[1])
     value_c = max(size_c, ROUNDED_C)
@@ -62,22 +68,19 @@ def _is_many(data_id: str) -> bool:
     return data_id.count("-") > 1
 
 
-def _ends(fraction: float) -> tuple[str, ...]:
-    if fraction <= 0.0:
-        return ("solidus",)
-    return ("liquidus",) if fraction >= 1.0 else ("solidus", "liquidus")
-
-
 def _off(rows: Sequence[Compared], end: str) -> list[float]:
     return sorted(abs(row.solidus_off_c if end == "solidus" else row.liquidus_off_c) for row in rows)
 
 
 def _nine_tenths(sizes: Sequence[float]) -> float:
-    """Linear between the sorted sizes; the greatest where there is one."""
+    """Linear between the sorted sizes."""
     place = SHARE * (len(sizes) - 1)
     k = int(place)
     return sizes[k] if k + 1 == len(sizes) else sizes[k] + (place - k) * (sizes[k + 1] - sizes[k])
 
 
 def _counted(rows: Sequence[Compared]) -> str:
-    return f"{len(rows)} filler{'s' if len(rows) != 1 else ''}"
+    """How many, and how many of them a fit was aimed at."""
+    used = sum(row.used_in_fit for row in rows)
+    fitted = f" ({used} used in fits)" if used else ""
+    return f"{len(rows)} filler{'s' if len(rows) != 1 else ''}{fitted}"

@@ -76,6 +76,11 @@ def gold_thickness_limit() -> KnownLimit:
     )
 
 
+def usual_superheat() -> KnownLimit:
+    """How far above its liquidus a filler is heated at most, °C; soldering and brazing alike."""
+    return process_limit("brazing temperature above liquidus", "general practice")
+
+
 def rohs_lead() -> KnownLimit:
     """Lead in a homogeneous material, wt%."""
     return safety_limit("lead", "RoHS maximum in homogeneous material")

@@ -7,6 +7,7 @@ from functools import lru_cache
 from types import MappingProxyType
 
 from diagrams.alloys import Alloy, alloy_from_designation, parse_alloy
+from diagrams.comparison import compared
 from diagrams.errors import DiagramsError, NotCovered, OutsideData
 from diagrams.files.catalog import catalog
 from diagrams.fillers import Filler
@@ -73,9 +74,9 @@ def placed_alloy(alloy: Alloy, field: str, leave_out_below_wt: float | None = No
 
 @lru_cache(maxsize=256)
 def printed(filler: Filler) -> Placed:
-    """A filler with nothing but what its standard prints, however well data may cover it."""
+    """A filler by two temperatures: its print, or where the data put it, the less favourable of both."""
     alloy = alloy_from_designation(filler.name)
-    melter = ByTable(alloy, filler)
+    melter = ByTable(alloy, _less_favourable(filler))
     return Placed(
         alloy,
         melter,
@@ -86,6 +87,15 @@ def printed(filler: Filler) -> Placed:
         "designation",
         "designation",
     )
+
+
+def _less_favourable(filler: Filler) -> Filler:
+    for row in compared():
+        if row.filler == filler.name:
+            solidus_c = filler.solidus_c + min(0.0, row.solidus_off_c)
+            liquidus_c = filler.liquidus_c + max(0.0, row.liquidus_off_c)
+            return replace(filler, solidus_c=solidus_c, liquidus_c=liquidus_c)
+    return filler
 
 
 def is_quick(asked: AlloyAsked | str) -> bool:

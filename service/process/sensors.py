@@ -154,7 +154,8 @@ def _shown(sensor: SensorClass) -> SensorClassShown:
         lowest_c=low,
         highest_c=high,
         tolerances=[
-            ToleranceAt(temperature_c=t, tolerance_c=sensor.tolerance_c(t)) for t in (low, *between, high)
+            ToleranceAt(temperature_c=t, tolerance_c=round(sensor.tolerance_c(t), 6))
+            for t in (low, *between, high)
         ],
         reference=reference_shown(sensor.source),
     )

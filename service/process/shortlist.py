@@ -1,25 +1,28 @@
 """Which fillers would do for a joint, the widest window first, and why the others would not.
 
-Fillers of three and more elements take a second each to compute. The most promising by their printed melting
-ranges are computed; the others are judged by what is printed, and their answer says so. Which are computed
-depends on the question alone, so that the same question gets the same answer.
+Where the filler need only be partly liquid, those of three and more elements take seconds each to compute.
+Then the most promising by their printed melting ranges are computed, and the others are judged by what is
+printed, which their answer says. Which are computed depends on the question alone.
 """
 
 from collections.abc import Sequence
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 
 from diagrams.errors import DiagramsError, NotConverged, OutsideData
 from diagrams.fillers import Filler
-from diagrams.units import celsius_to_kelvin
-from service.process.effort import MOST_COMPUTED, MOST_EFFORT
+from diagrams.units import celsius_to_kelvin, kelvin_to_celsius
+from service.process.effort import MOST_COMPUTED
 from service.process.placed import Placed, placed, printed
 from service.process.sensors import FIELD as SENSOR_CLASS
 from service.process.suitability import Suits, suits
 from service.process.upper_limits import UpperKnown
 from service.process.window import Demands, Window, find_window
+from service.process.window_terms import UpperLimit, limit_term
 from service.schemas.alloy import AlloyAsked
 
-SLACK_C = 40.0  # printed and computed melting ranges differ by less, but for a few rows in hundred
+MOST_SEARCHED = 24  # of effort: three with tolerances for two of three elements
+MOST_SUPERHEAT = "most superheat"
+SLACK_C = 40.0  # printed and computed melting ranges differ by less, but for a few rows in a hundred
 
 
 @dataclass(frozen=True)
@@ -34,6 +37,7 @@ class Wanted:
     standard: str | None = None
     banned: frozenset[str] = frozenset()
     unwanted: frozenset[str] = frozenset()
+    most_superheat_c: float = 0.0
 
 
 @dataclass(frozen=True)
@@ -74,6 +78,8 @@ class Shortlist:
 
 def shortlist(chosen: Sequence[Filler], wanted: Wanted) -> Shortlist:
     """Look at fillers; raises what `find_window` raises about anything but the filler."""
+    for limit in wanted.demands.upper_limits:
+        limit_term(limit, wanted.demands.budget)  # a sensor that cannot serve a limit is no filler's fault
     excluded: dict[str, tuple[Exclusion, ...]] = {}
     left = []
     for filler in chosen:
@@ -116,6 +122,8 @@ def _kept_off(filler: Filler, wanted: Wanted) -> list[Exclusion]:
 
 def _left_to_print(fillers: Sequence[Filler], wanted: Wanted) -> frozenset[str]:
     """The names of those that are judged by their print: hopeless ones, and those past the effort allowed."""
+    if wanted.demands.target_liquid_fraction >= 1.0:
+        return frozenset()  # where a filler begins and ends to melt is kept
     promising: list[tuple[float, Filler, int]] = []
     kept_to_print = set()
     for filler in fillers:
@@ -132,7 +140,7 @@ def _left_to_print(fillers: Sequence[Filler], wanted: Wanted) -> frozenset[str]:
     total = 0
     for count, (_, filler, effort) in enumerate(promising):
         total += effort
-        if count >= MOST_COMPUTED or total > MOST_EFFORT:
+        if count >= MOST_COMPUTED or total > MOST_SEARCHED:
             kept_to_print.add(filler.name)
     return frozenset(kept_to_print)
 
@@ -152,7 +160,7 @@ def _look(filler: Filler, wanted: Wanted, *, by_print: bool) -> Candidate | Excl
     """A filler with its window, or why no window can be told."""
     try:
         subject = printed(filler) if by_print else placed(AlloyAsked(designation=filler.name))
-        window = find_window(subject, wanted.demands, "")
+        window = find_window(subject, _demands_on(subject, wanted), "", seeing_joints=False)
         solidus_c = subject.melter.kept(0.0).safe_low
     except (OutsideData, NotConverged) as error:
         if error.field == SENSOR_CLASS:
@@ -173,6 +181,20 @@ def _look(filler: Filler, wanted: Wanted, *, by_print: bool) -> Candidate | Excl
     )
 
 
+def _demands_on(subject: Placed, wanted: Wanted) -> Demands:
+    """A filler without a brazing range is kept from overheating by the superheat that is usual at most."""
+    row = subject.alloy.filler
+    if row is None or row.brazing_range_c is not None:
+        return wanted.demands
+    liquidus_c = subject.melter.needed(1.0).nominal
+    told = (
+        f"{row.name} is all liquid from {liquidus_c:.2f} °C on, and at most {wanted.most_superheat_c:g} °C "
+        "more are wanted: nothing else tells how hot it may get."
+    )
+    limit = UpperLimit(MOST_SUPERHEAT, liquidus_c + wanted.most_superheat_c, told=told)
+    return replace(wanted.demands, upper_limits=(*wanted.demands.upper_limits, limit))
+
+
 def _homologous(service_c: float, solidus_c: float) -> float:
     return celsius_to_kelvin(service_c) / celsius_to_kelvin(solidus_c)
 
@@ -180,13 +202,13 @@ def _homologous(service_c: float, solidus_c: float) -> float:
 def _excluded(
     window: Window, wanted: Wanted, solidus_c: float, homologous: float | None, by_print: bool
 ) -> list[Exclusion]:
-    how = " (by its printed melting range, not computed)" if by_print else ""
+    how = " (not computed: by print or data, the less favourable)" if by_print else ""
     found = []
     if wanted.service_c is not None and solidus_c <= wanted.service_c:
         text = f"It begins to melt at {solidus_c:.1f} °C{how}, and gets {wanted.service_c:g} °C hot in use."
         found.append(Exclusion("service-temperature", text, wanted.service_c - solidus_c))
     elif homologous is not None and wanted.most_homologous is not None:
-        lowest_c = celsius_to_kelvin(wanted.service_c or 0.0) / wanted.most_homologous - 273.15
+        lowest_c = kelvin_to_celsius(homologous * celsius_to_kelvin(solidus_c) / wanted.most_homologous)
         if homologous > wanted.most_homologous:
             text = (
                 f"Its homologous service temperature is {homologous:.3f}{how}, the most wanted is "
@@ -198,7 +220,10 @@ def _excluded(
     return found
 
 
-def elements_of(candidates: Sequence[Candidate], bases: Sequence[UpperKnown]) -> frozenset[str]:
-    """What cautions have to speak of."""
+def elements_of(candidates: Sequence[Candidate], demands: Demands) -> frozenset[str]:
+    """What cautions have to speak of: fillers, earlier joints, and what the limits are of."""
     held = {el for c in candidates for el in (*c.filler.composition_wt, *c.filler.limits_wt)}
-    return frozenset(held).union(*(base.elements for base in bases))
+    return frozenset(held).union(
+        *(joint.subject.elements for joint in demands.earlier_joints),
+        *(limit.known.elements for limit in demands.upper_limits if limit.known is not None),
+    )

@@ -7,7 +7,8 @@ from diagrams.errors import InvalidInput
 from diagrams.fillers import FILLERS_EDITION, FILLERS_GUIDANCE, Filler, fillers, find_filler
 from service.process.budget_asked import budget_shown
 from service.process.effort import check_effort
-from service.process.shortlist import Candidate, Wanted, elements_of, shortlist
+from service.process.known_limits import usual_superheat
+from service.process.shortlist import MOST_SUPERHEAT, Candidate, Wanted, elements_of, shortlist
 from service.process.shortlist_reasons import Reason, reasons_against, reasons_for
 from service.process.suitability import base_metal
 from service.process.upper_limits import UpperKnown, limit_shown
@@ -56,12 +57,18 @@ def shortlist_of(question: ShortlistQuestion) -> ShortlistAnswer:
         ],
         edition=FILLERS_EDITION,
         guidance=FILLERS_GUIDANCE,
-        safety=safety_for(elements_of(shown, bases), question.class_, hottest_c),
+        safety=safety_for(elements_of(shown, demands), question.class_, hottest_c),
     )
 
 
 def _demands(question: ShortlistQuestion, bases: Sequence[UpperKnown]) -> Demands:
     """What a window is asked, with the base metals and the highest peak among its limits."""
+    if question.base_metal_margin_c and not bases:
+        raise InvalidInput(
+            "A margin is given, and no base metal.",
+            field="base_metal_margin_c",
+            remedy="Name base_metals, or leave it out.",
+        )
     own = demands_of(question)
     limits = [
         UpperLimit(base.subject, base.limit_c, question.base_metal_margin_c, base)
@@ -69,14 +76,15 @@ def _demands(question: ShortlistQuestion, bases: Sequence[UpperKnown]) -> Demand
     ]
     if question.highest_peak_c is not None:
         limits.append(UpperLimit(HIGHEST_PEAK, question.highest_peak_c))
-    if not (limits or own.upper_limits or own.earlier_joints):
+    bounding = [joint for joint in own.earlier_joints if joint.max_liquid_fraction < 1.0]
+    if not (limits or own.upper_limits or bounding):
         raise InvalidInput(
             "Nothing bounds the peak: windows open above cannot be told apart by their width.",
             field="highest_peak_c",
             remedy="Give highest_peak_c, base_metals, upper_limits or earlier_joints.",
         )
     joints = own.earlier_joints
-    _check_names(question, {limit.name for limit in limits})
+    _check_names(question, {MOST_SUPERHEAT, *(limit.name for limit in limits)})
     check_effort(
         [(f"earlier_joints.{k}.alloy", joint.subject) for k, joint in enumerate(joints)], tolerances=True
     )
@@ -120,10 +128,16 @@ def _wanted(question: ShortlistQuestion, bases: Sequence[UpperKnown], demands: D
         class_=question.class_,
         standard=question.standard,
         banned=_banned(bans),
-        unwanted=frozenset(
-            find_filler(text, field=f"bans.fillers.{k}").name for k, text in enumerate(bans.fillers)
-        ),
+        unwanted=_unwanted(bans),
+        most_superheat_c=question.most_superheat_c or usual_superheat().limit,
     )
+
+
+def _unwanted(bans: BansAsked) -> frozenset[str]:
+    """The rows of the alloys named, whatever standard lists them."""
+    named = [find_filler(text, field=f"bans.fillers.{k}") for k, text in enumerate(bans.fillers)]
+    alike = [filler.composition_wt for filler in named]
+    return frozenset(filler.name for filler in fillers() if filler.composition_wt in alike)
 
 
 def _banned(bans: BansAsked) -> frozenset[str]:

@@ -70,8 +70,9 @@ def reasons_against(candidate: Candidate, wanted: Wanted) -> list[Reason]:
         found.append(Reason("zinc", text))
     if candidate.by_print:
         text = (
-            f"{label(candidate.subject)} was judged by its printed melting range, without its tolerance; "
-            "POST /v1/window computes it."
+            f"{label(candidate.subject)} was not computed for this list: its printed melting range, or where "
+            "the data put it, the less favourable of both, was taken, without its tolerance; POST "
+            "/v1/window computes it."
         )
         found.append(Reason("not-computed", text))
     of_limits = warnings_of_limits(wanted.demands.upper_limits)

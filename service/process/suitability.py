@@ -19,7 +19,7 @@ Verdict = Literal["for", "against", "barred"]
 _FAMILIES = (
     ("Cu-Ni", "copper-nickel"),
     ("Cu ", "copper"),
-    ("beryllium copper", "bronze"),
+    ("beryllium copper", "beryllium-copper"),
     ("phosphor bronze", "bronze"),
     ("brass", "brass"),
     ("nickel silver", "copper-nickel"),  # about 18 % of nickel: what bars phosphorus there bars it here
@@ -28,6 +28,7 @@ _FAMILIES = (
     ("stainless", "stainless"),
     ("N", "nickel"),
     ("Ti", "titanium"),
+    ("Al 5052", "aluminium-magnesium"),
     ("Al ", "aluminium"),
     ("Ag ", "silver"),
     ("sterling silver", "silver"),
@@ -52,6 +53,7 @@ KINDS: Mapping[str, Callable[[Filler], bool]] = {
     ),
     "soft solder without zinc": lambda f: KINDS["soft solder"](f) and "Zn" not in f.composition_wt,
     "soft solder with zinc": lambda f: KINDS["soft solder"](f) and "Zn" in f.composition_wt,
+    "any solder": lambda f: f.class_ == "solder",
     "any braze": _braze,
     "braze without aluminium": lambda f: _braze(f) and not _most(f, "Al"),
     "silver braze": lambda f: _braze(f) and f.composition_wt.get("Ag", 0.0) >= 20.0,

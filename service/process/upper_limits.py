@@ -29,7 +29,12 @@ _TOPICS: Mapping[str, tuple[Kind, str, str]] = {
 }
 _FLUX_CONDITIONS = ("activity range", "effective range")  # others tell of melting and fume, not of an end
 # What base metals hold that cautions speak of; the lead of free-cutting brass, about 3 %, from memory.
-_CAUTIONS = (("brass", {"Zn"}), ("brass C36000", {"Pb"}), ("nickel silver", {"Zn"}))
+_CAUTIONS = (
+    ("beryllium copper", {"Be"}),
+    ("brass", {"Zn"}),
+    ("brass C36000", {"Pb"}),
+    ("nickel silver", {"Zn"}),
+)
 _SIGNS = (("<", "under "), (">", "over "), ("≥", "from "), ("³", "3"))
 _APART = re.compile(r"[^a-z0-9.]+")
 

@@ -84,8 +84,12 @@ class Window:
     warnings: tuple[Warned, ...]
 
 
-def find_window(filler: Placed, demands: Demands, where: str = "alloy") -> Window:
+def find_window(
+    filler: Placed, demands: Demands, where: str = "alloy", *, seeing_joints: bool = True
+) -> Window:
     """The window of a joint made with a filler; `where` is the path of the filler's alloy in the question.
+
+    Without `seeing_joints` it is left open what earlier joints go through, which may take a search for each.
 
     Raises InvalidInput for names given twice and for too much to compute, OutsideData where a temperature
     needed lies beyond the data.
@@ -119,6 +123,7 @@ def find_window(filler: Placed, demands: Demands, where: str = "alloy") -> Windo
     seen = tuple(
         _seen(joint, start, maximum_c, budget.sensor)
         for joint, start in zip(demands.earlier_joints, starts, strict=True)
+        if seeing_joints
     )
     return Window(
         minimum_peak_c=verdict.lower.value_c,

@@ -20,7 +20,8 @@ class Term:
     """One bound on a reading: where it starts, what was asked for on top, and what is uncertain about it.
 
     `asked` are added as they are. `uncertain` are sizes, none negative: added for a lower bound, taken off
-    for an upper one, all of them or as the root of the sum of their squares.
+    for an upper one, all of them or as the root of the sum of their squares. An upper bound never exceeds
+    `ceiling_c`, beyond which the sensor tells nothing.
     """
 
     name: str
@@ -29,14 +30,23 @@ class Term:
     uncertain: tuple[Part, ...]
     lower: bool
     combination: Combination = WORST_CASE
+    ceiling_c: float = math.inf
 
     @property
     def parts(self) -> tuple[Part, ...]:
         """Added up in this order they give the bound to the last digit."""
+        parts = (self.start, *self.asked, *self._counted())
+        beyond_c = sum(part.value_c for part in parts) - self.ceiling_c
+        if beyond_c <= 0.0:
+            return parts
+        reason = f"The class of the sensor ends lower: readings above {self.ceiling_c:.2f} °C tell nothing."
+        return (*parts, Part("end of the sensor class", 0.0 - beyond_c, reason))
+
+    def _counted(self) -> tuple[Part, ...]:
+        """What is uncertain, as it is added or taken off."""
         sign = 1.0 if self.lower else -1.0
         if self.combination == WORST_CASE or len(self.uncertain) < 2:
-            counted = [replace(part, value_c=sign * part.value_c + 0.0) for part in self.uncertain]
-            return (self.start, *self.asked, *counted)
+            return tuple(replace(part, value_c=sign * part.value_c + 0.0) for part in self.uncertain)
         names = [part.name for part in self.uncertain]
         told = ", ".join(f"{part.name} {part.value_c:.4g} °C" for part in self.uncertain)
         together = Part(
@@ -44,7 +54,7 @@ class Term:
             sign * self.uncertain_c + 0.0,
             f"Root of the sum of the squares of {told}, taken to be independent of each other.",
         )
-        return (self.start, *self.asked, together)
+        return (together,)
 
     @property
     def uncertain_c(self) -> float:

@@ -15,12 +15,16 @@ BRAZING_MAXIMUM = "brazing range maximum"
 
 @dataclass(frozen=True)
 class UpperLimit:
-    """A temperature that a part, a board or a base metal must not exceed; `known` if it is a stored one."""
+    """A temperature that a part, a board or a base metal must not exceed.
+
+    `known` if it is a stored one; `told` says what it is where its name and figure do not.
+    """
 
     name: str
     limit_c: float
     margin_c: float = 0.0
     known: UpperKnown | None = None
+    told: str = ""
 
 
 @dataclass(frozen=True, eq=False)
@@ -48,12 +52,12 @@ def target_term(filler: Placed, fraction: float, superheat_c: float, budget: Bud
 
 def limit_term(limit: UpperLimit, budget: Budget) -> Term:
     """A named limit, lowered by what the sensor may miss."""
-    reason = f"{limit.name} may reach {limit.limit_c:g} °C."
+    reason = limit.told or f"{limit.name} may reach {limit.limit_c:g} °C."
     if limit.known is not None:
         reason = f"{limit.name}: {limit.known.told}"
     start = Part("limit", limit.limit_c, reason)
     uncertain = (budget.read_low(limit.limit_c - limit.margin_c),)
-    return Term(limit.name, start, (margin(limit.margin_c),), uncertain, False, budget.combination)
+    return _upper(limit.name, start, (margin(limit.margin_c),), uncertain, budget)
 
 
 def practice_terms(filler: Placed, budget: Budget) -> tuple[list[Term], list[Term]]:
@@ -72,9 +76,8 @@ def practice_terms(filler: Placed, budget: Budget) -> tuple[list[Term], list[Ter
         f"{row.how}): guidance from practice, left out if the alloy is given by composition."
     )
     start, end = Part(BRAZING_MINIMUM, low_c, reason), Part(BRAZING_MAXIMUM, high_c, reason)
-    by = budget.combination
-    lower = Term(BRAZING_MINIMUM, start, (), (budget.read_high(low_c),), True, by)
-    upper = Term(BRAZING_MAXIMUM, end, (), (budget.read_low(high_c),), False, by)
+    lower = Term(BRAZING_MINIMUM, start, (), (budget.read_high(low_c),), True, budget.combination)
+    upper = _upper(BRAZING_MAXIMUM, end, (), (budget.read_low(high_c),), budget)
     return [lower], [upper]
 
 
@@ -92,7 +95,14 @@ def remelting_term(joint: EarlierJoint, budget: Budget) -> list[Term]:
     name = "solidus" if joint.max_liquid_fraction == 0.0 else "temperature of the most liquid allowed"
     start = Part(name, found.nominal, reason)
     uncertain = budget.below(found, joint.subject.melter, joint.max_liquid_fraction, joint.margin_c)
-    return [Term(joint.name, start, (margin(joint.margin_c),), uncertain, False, budget.combination)]
+    return [_upper(joint.name, start, (margin(joint.margin_c),), uncertain, budget)]
+
+
+def _upper(
+    name: str, start: Part, asked: tuple[Part, ...], uncertain: tuple[Part, ...], budget: Budget
+) -> Term:
+    """An upper bound; no reading beyond the end of the sensor's class tells anything."""
+    return Term(name, start, asked, uncertain, False, budget.combination, budget.highest_reading_c)
 
 
 def label(subject: Placed) -> str:

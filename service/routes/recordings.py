@@ -45,10 +45,12 @@ class RecordingRoute(StrictRoute):
         async def recording_handler(request: Request) -> Response:
             kind = request.headers.get("content-type", "").partition(";")[0].strip().lower()
             if kind == PARTS:
+                refuse_odd_parameters(request, known)
                 _refuse_parameters_beside_json(request)
                 await refuse_other_bodies(request, self.also_takes)
                 return await handler(_as_json(request, await _body_of_parts(request)))
             if kind != TABLE:
+                refuse_odd_parameters(request, known)
                 _refuse_parameters_beside_json(request)
                 return await handler(request)
             await refuse_other_bodies(request, self.also_takes)

@@ -50,7 +50,7 @@ def make_shortlist(
     """Rank the fillers of the table by the width of their window, with what speaks for and against each.
 
     Those that would not do come with every reason: barred elements, practice on these base metals, melting
-    in use, no window. At most six alloys of three and more elements are computed at once, the most promising;
-    others are judged by their printed melting range and say so.
+    in use, no window. With a target under 1 at most six alloys of three and more elements are computed, the
+    most promising; the others are judged by their printed melting range and say so.
     """
     return shortlist_of(question)

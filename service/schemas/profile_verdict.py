@@ -9,7 +9,7 @@ from service.schemas.base import Answer, AnswerModel
 from service.schemas.profile_words import Repair, Side
 from service.schemas.source import Reference, SourceUsed
 from service.schemas.uncertainty import BudgetShown
-from service.schemas.window import LiquidReached, WarningShown
+from service.schemas.window import LiquidReached, TermShown, WarningShown
 
 
 class LimitChecked(AnswerModel):
@@ -77,6 +77,9 @@ class EarlierJointSeen(AnswerModel):
     name: str
     alloy: AlloyUsed
     max_liquid_fraction: float
+    bound: TermShown | None = Field(
+        description="What it allows the hottest reading, with all that counts; null if it may melt again."
+    )
     liquid_mass_fraction: LiquidReached
     source: SourceUsed
 

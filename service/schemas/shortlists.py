@@ -40,7 +40,8 @@ class BansAsked(StrictModel):
     lead: bool = Field(default=False, description="No filler with lead.")
     cadmium: bool = Field(default=False, description="No filler with cadmium.")
     fillers: Annotated[list[StockedName], Field(max_length=MOST_STOCKED)] = Field(
-        default=[], description="Designations that are not wanted."
+        default=[],
+        description="Designations that are not wanted, nor others of the same nominal composition.",
     )
 
 
@@ -59,7 +60,7 @@ class ShortlistQuestion(BudgetAsked):
     service_temperature_c: Temperature | None = Field(
         default=None, description="The hottest the joint gets in use, °C; it must stay solid there."
     )
-    most_homologous: Annotated[float, Field(gt=0, le=1)] | None = Field(
+    most_homologous: Annotated[float, Field(ge=0.2, le=1)] | None = Field(
         default=None,
         description="Highest homologous service temperature wanted: service temperature over solidus, both "
         "in kelvin.",
@@ -75,6 +76,11 @@ class ShortlistQuestion(BudgetAsked):
     )
     target_liquid_fraction: Target = Field(default=1.0, description=TARGET)
     superheat_c: Difference = Field(default=0.0, description=SUPERHEAT)
+    most_superheat_c: Annotated[float, Field(gt=0, le=1000)] | None = Field(
+        default=None,
+        description="How far above its liquidus a filler may get for which the table gives no brazing range, "
+        "°C; left out, what is usual at most. Hand and bath soldering run wider.",
+    )
     class_: FillerClass | None = Field(
         default=None, alias="class", description="`solder` or `braze` only; left out, both."
     )

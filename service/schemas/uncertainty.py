@@ -90,8 +90,8 @@ class SensorClassShown(AnswerModel):
     """One class of thermocouple."""
 
     name: str = Field(description="What `sensor_class` takes; case, spaces and hyphens do not matter.")
-    lowest_c: float = Field(description="The standard gives a tolerance from here, °C,")
-    highest_c: float = Field(description="to here, °C.")
+    lowest_c: float = Field(description="Lowest temperature the standard gives a tolerance for, °C.")
+    highest_c: float = Field(description="Highest temperature it gives one for, °C.")
     tolerances: list[ToleranceAt] = Field(description="At the ends of its range and at every 100 °C between.")
     reference: Reference
 

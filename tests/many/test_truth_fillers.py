@@ -56,7 +56,9 @@ def test_the_stored_comparison_is_what_the_data_give() -> None:
     stored = {r.filler: (r.solidus_off_c, r.liquidus_off_c) for r in compared_before() if r.filler in ROWS}
     assert set(stored) == set(ROWS)
     for name, (_, solidus, liquidus) in ROWS.items():
-        assert stored[name] == pytest.approx((solidus, liquidus), abs=0.006), "python -m diagrams.comparison"
+        assert stored[name] == pytest.approx((solidus, liquidus), abs=0.006), (
+            "python -m diagrams.fitting.compare"
+        )
 
 
 def test_known_rows_are_rows() -> None:

@@ -7,9 +7,10 @@ import pytest
 from hypothesis import given
 from hypothesis import strategies as st
 
-from diagrams.comparison import compare, compared
+from diagrams.comparison import compared
 from diagrams.errors import OutsideData
 from diagrams.fillers import fillers
+from diagrams.fitting.compare import compare
 from service.process.budget import Budget
 from service.process.data_uncertainty import data_uncertainty
 from service.process.placed import placed
@@ -109,7 +110,18 @@ def test_an_upper_bound_beyond_the_class_is_where_the_class_ends():
     pipe, tape = find_window(placed(TIN_LEAD), demands).upper_terms
     assert pipe.value_c == pytest.approx(370 - 0.004 * 370)
     assert tape.value_c == pytest.approx(360 - 0.004 * 360)
-    assert "ends at 370 °C" in pipe.uncertain[0].reason
+    assert [part.name for part in pipe.parts][-1] == "end of the sensor class"
+    assert pipe.uncertain[0].value_c == pytest.approx(0.004 * 370)
+    assert sum(part.value_c for part in pipe.parts) == pipe.value_c
+
+
+@pytest.mark.parametrize("by", [WORST_CASE, ROOT_SUM_SQUARE])
+def test_no_combination_reads_beyond_the_class(by):
+    """An earlier joint of silver braze under a sensor that ends at 350 °C: its doubts do not count twice."""
+    sensor = sensor_class("IEC 60584 type T class 2")
+    joints = (EarlierJoint("braze", placed(AlloyAsked(designation="BAg-8"))),)
+    demands = Demands(target_liquid_fraction=1.0, earlier_joints=joints, budget=Budget(sensor, None, by))
+    assert find_window(placed(TIN_LEAD), demands).maximum_peak_c == pytest.approx(350 - 0.0075 * 350)
 
 
 def test_a_bound_beyond_the_class_is_refused():

@@ -53,6 +53,13 @@ def test_every_rule_speaks_of_something(rule):
         ("Zn98Al2", ["al-3003"], {"for"}),
         ("BAg-24", ["stainless-304"], set()),  # with nickel
         ("BAg-28", ["stainless-304"], {"against"}),
+        ("CuP 182", ["nickel-silver-c75200"], {"barred"}),
+        ("CuP 182", ["ti-grade-2"], {"barred", "against"}),
+        ("BAlSi-4", ["ti-grade-2"], {"against"}),
+        ("Au80Sn20", ["ti-grade-2"], {"barred"}),
+        ("Zn98Al2", ["stainless-304"], {"against"}),
+        ("BAlSi-4", ["al-5052"], {"against"}),
+        ("Sn63Pb37", ["beryllium-copper-c17200"], {"against"}),
         ("BAg-8", [], set()),
     ],
 )

@@ -127,3 +127,16 @@ def test_the_classes_are_listed(ask):
         body = JOINT | {"sensor_class": one["name"]}
         answer = ask("POST", "/v1/window", json=body)
         assert (answer.status_code == 200) is (one["lowest_c"] <= 199 <= one["highest_c"]), answer.text
+
+
+def test_a_given_window_shows_what_counts_for_earlier_joints_and_says_where_nothing_does(ask):
+    given = {"alloy": JOINT["alloy"], "window": {"minimum_peak_c": 195, "maximum_peak_c": 240}, **RUN}
+    budget = {"sensor_class": CLASS, "count_data": True}
+    unused = post(ask, "profile-checks", **given, **budget)
+    assert "budget-unused" in [warning["code"] for warning in unused["warnings"]]
+    assert "budget-unused" not in [w["code"] for w in post(ask, "profile-checks", **given)["warnings"]]
+    seen = post(ask, "profile-checks", **given, **budget, earlier_joints=[LUG])
+    assert "budget-unused" not in [warning["code"] for warning in seen["warnings"]]
+    (bound,) = (joint["bound"] for joint in seen["earlier_joints"])
+    assert bound["value_c"] == seen["window"]["maximum_peak_c"]
+    assert [one["name"] for one in bound["uncertainties"]] == ["alloy tolerance", "data", "sensor tolerance"]

@@ -121,3 +121,23 @@ def test_what_is_wrong_is_named(ask, address, field):
 
 def test_a_format_has_no_place_beside_a_check(ask):
     assert ask("POST", "/v1/profile-checks?format=svg", json=RUN).status_code == 422
+
+
+def test_names_in_any_script_and_with_signs_that_no_picture_holds(ask):
+    """An SVG must stay readable XML, a PNG must not fail, whatever a logger called its channels."""
+    names = ["左上角", "A\u0001b\u0007", "tab\there", "\ufffe end", "🔥 hot"]
+    sensors = [RUN["sensors"][0] | {"name": name} for name in names]
+    told = svg(ask, sensors=sensors)
+    assert "左上角" in told
+    assert "A\ufffdb\ufffd" in told
+    assert ask("POST", FIGURE, json=RUN | {"sensors": sensors}).status_code == 200
+
+
+def test_it_says_which_uncertainties_the_window_counts(ask):
+    assert "worst case of alloy, data and sensor" in svg(ask)
+    more = {"sensor_class": "IEC 60584 type K class 1", "count_data": True, "combination": "root-sum-square"}
+    question = {key: value for key, value in RUN.items() if key != "sensor_tolerance_c"} | more
+    told = words(ask("POST", f"{FIGURE}?format=svg", json=question))
+    assert "root-sum-square of alloy, data and sensor, IEC 60584 type K class 1" in told
+    assert "data as compared with prints" in told
+    assert "at most 230.0 °C (dotted)" in told

@@ -35,6 +35,8 @@ def post(ask, call="shortlists", **body):
 
 def window_of(ask, name, question):
     limits = [{"name": "copper", "known": COPPER}, {"name": "peak", "limit_c": question["highest_peak_c"]}]
+    liquidus_c = ask("GET", "/v1/melting", params={"alloy": name}).json()["liquidus_c"]["nominal"]
+    limits.append({"name": "most superheat", "limit_c": liquidus_c + 60})  # general practice at most
     body = {field: question[field] for field in SAME} | {"upper_limits": limits}
     return post(ask, "window", alloy={"designation": name}, target_liquid_fraction=1, **body)
 
@@ -155,8 +157,12 @@ def test_practice_bars_speaks_for_and_against(ask):
     assert aluminium["ranked"][0]["maximum_peak_c"] <= 643 - 20
 
 
-def test_the_whole_table_computes_six_and_says_so_of_the_others(ask):
+def test_a_target_under_one_computes_six_and_says_so_of_the_others(ask):
     body = {"highest_peak_c": 260, "class": "solder", "most": 167, "superheat_c": 10}
+    all_liquid = post(ask, **body)
+    codes = {reason["code"] for one in all_liquid["ranked"] for reason in one["reasons_against"]}
+    assert "not-computed" not in codes
+    body["target_liquid_fraction"] = 0.9
     found = post(ask, **body)
     assert found["ranked_count"] == len(found["ranked"]) > 20
     assert found["ranked_count"] + found["excluded_count"] == 167
@@ -170,7 +176,9 @@ def test_the_whole_table_computes_six_and_says_so_of_the_others(ask):
     late = [one for one in found["ranked"] if "not-computed" in [r["code"] for r in one["reasons_against"]]]
     assert late
     for one in late[:2]:
-        assert one["liquidus_c"] == ask("GET", f"/v1/fillers/{one['name']}").json()["liquidus_c"]
+        printed = ask("GET", f"/v1/fillers/{one['name']}").json()
+        assert one["liquidus_c"] >= printed["liquidus_c"]
+        assert one["solidus_c"] <= printed["solidus_c"]
     assert any(note["topic"] == "lead" for note in found["safety"]["notes"])
 
 
@@ -214,3 +222,58 @@ def test_something_has_to_bound_the_peak_and_homologous_needs_a_service_temperat
         answer = ask("POST", "/v1/shortlists", json=body)
         assert answer.status_code == 422
         assert answer.json()["errors"][0]["field"] == field
+
+
+def test_cautions_speak_of_joints_and_limits_too(ask):
+    topics = {note["topic"] for note in post(ask, **BASE, bans={"lead": True})["safety"]["notes"]}
+    assert "lead" in topics  # of the die's solder
+    base = {"stocked_fillers": ["Sn100"], "base_metals": ["beryllium-copper-c17200"]}
+    assert "beryllium" in {note["topic"] for note in post(ask, **base)["safety"]["notes"]}
+    limits = [{"name": "body", "known": "brass-c36000-free-cutting"}]
+    leaded = post(ask, stocked_fillers=["Sn100"], upper_limits=limits)
+    assert "lead" in {note["topic"] for note in leaded["safety"]["notes"]}
+
+
+def test_without_a_brazing_range_usual_superheat_keeps_a_filler_from_overheating(ask):
+    """Ag 156 and BAg-7 are one alloy; only the latter's row has a brazing range, 652 to 760 °C."""
+    body = {"base_metals": ["low-carbon-steel-1010-1020"], "stocked_fillers": ["Ag 156", "BAg-7", "Sn100"]}
+    found = {one["name"]: one for one in post(ask, **body)["ranked"]}
+    assert found["BAg-7"]["binding_upper"] == "brazing range maximum"
+    assert found["Ag 156"]["binding_upper"] == "most superheat"
+    assert found["Ag 156"]["maximum_peak_c"] == 655 + 60
+    assert found["Sn100"]["width_c"] == pytest.approx(60, abs=0.1)
+    wide = {one["name"]: one for one in post(ask, **body, most_superheat_c=200)["ranked"]}
+    assert wide["Sn100"]["width_c"] == pytest.approx(200, abs=0.1)
+    assert wide["BAg-7"] == found["BAg-7"] | {"rank": wide["BAg-7"]["rank"]}
+    banned = post(ask, **body, bans={"fillers": ["BAg-7"]})
+    assert names(banned) == ["Sn100"]  # one alloy, whatever it is called
+
+
+def test_a_print_is_not_trusted_where_the_data_know_worse(ask):
+    """Sn60Pb39Cu1 is printed without its last crystals of Cu6Sn5, which melt 140 °C higher."""
+    body = {"highest_peak_c": 320, "count_data": True, "class": "solder", "superheat_c": 15, "most": 167}
+    assert not {"Sn60Pb39Cu1", "Sn50Pb49Cu1"} & set(names(post(ask, **body)))
+
+
+@pytest.mark.parametrize(
+    ("body", "field"),
+    [
+        (
+            {
+                "earlier_joints": [
+                    {"name": "a", "alloy": {"designation": "CuP 182"}, "max_liquid_fraction": 1}
+                ]
+            },
+            "highest_peak_c",
+        ),
+        ({"highest_peak_c": 250, "service_temperature_c": 100, "most_homologous": 1e-300}, "most_homologous"),
+        ({"highest_peak_c": 250, "sensor_class": "IEC 60584 type B class 2"}, "sensor_class"),
+        ({"highest_peak_c": 250, "base_metal_margin_c": 5}, "base_metal_margin_c"),
+        ({"highest_peak_c": 250, "most": 1.5}, "most"),
+    ],
+)
+def test_what_cannot_be_asked_is_refused_once(ask, body, field):
+    answer = ask("POST", "/v1/shortlists", json=body)
+    assert answer.status_code == 422
+    assert [error["field"] for error in answer.json()["errors"]] == [field]
+    assert "without quotes" not in answer.json()["errors"][0]["remedy"]

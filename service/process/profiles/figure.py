@@ -1,51 +1,51 @@
 """The picture of a judged run: curves, window, melting range and, on the same time axis, liquid fraction."""
 
-from collections.abc import Sequence
 from typing import TYPE_CHECKING
 
 import numpy as np
 
 from diagrams.figure_scales import celsius_axis, even
-from diagrams.figure_sheet import TITLE_SIZE, WIDTH, Note, Sheet, origin_lines, plot_height
+from diagrams.figure_sheet import TITLE_SIZE, WIDTH, Sheet, origin_lines, plot_height
 from diagrams.figure_style import (
     CAUTION,
     FAINT,
     FIELDS,
     INK,
     INVARIANT,
-    MARK,
     PictureFormat,
-    both_scales,
     text_width,
 )
 from service.process.caution import caution_lines
 from service.process.profiles.check import Run
-from service.process.profiles.judge import SensorJudged
-from service.process.profiles.limits import Checked
+from service.process.profiles.figure_notes import (
+    FAILS,
+    PASSES,
+    colour_of,
+    passes,
+    side_notes,
+    style_of,
+    verdict_told,
+)
 from service.process.profiles.trace import Floats, Trace
 from service.process.window_terms import label
 
 if TYPE_CHECKING:
     from matplotlib.axes import Axes
 
-COLOURS = ("#1f4e79", "#2f7d32", "#6a3d7c", "#8a5a00", "#00707a", "#c0561a", "#3d3f8f", "#555f66")
-STYLES = ("-", (0, (5, 2)), (0, (1.5, 1.5)), (0, (6, 2, 1.5, 2)))
-PASSES, FAILS = "#2f7d32", MARK
 COLUMNS = 1000  # of the plot: more samples than this cannot be told apart
 LIQUID_HEIGHT, BETWEEN = 92.0, 14.0  # points
-MOST_SENSORS, MOST_FAILURES = 14, 8  # that the side notes name
 
 
 def draw_run(run: Run, form: PictureFormat) -> bytes:
     """The picture as PNG or SVG; the same run gives the same bytes."""
-    notes = _side_notes(run)
+    notes = side_notes(run)
     origins = origin_lines(run.filler.melter)
     if run.standard is not None:
         found = run.standard.source
         origins.append(f"Limits of {run.standard.key}: {found.text}, {found.how}; {run.standard.edition}.")
     caution = caution_lines(_elements(run), run.filler.process)
     height = max(plot_height(notes), 300.0 + LIQUID_HEIGHT + BETWEEN)
-    title, subtitle = label(run.filler), f"recorded run, {_verdict(run)}"
+    title, subtitle = label(run.filler), f"recorded run, {verdict_told(run)}"
     if text_width(title, TITLE_SIZE, True) + text_width(subtitle, 8.5) > WIDTH - 60.0:
         subtitle = "recorded run"  # the side notes say the rest
     sheet = Sheet(title, subtitle, origins, caution, height)
@@ -78,23 +78,14 @@ def _elements(run: Run) -> frozenset[str]:
     return run.filler.elements.union(*(joint.subject.elements for joint in run.demands.earlier_joints))
 
 
-def _verdict(run: Run) -> str:
-    tightest = run.judged.tightest
-    if tightest is None:
-        return "nothing asked of it"
-    told = "passed" if run.judged.passed else "failed"
-    whose = f" of {_short(run.judged.tightest_sensor)}" if run.judged.tightest_sensor else ""
-    if tightest.margin is None:
-        return f"{told}: {tightest.limit}{whose} not shown by the record"
-    return f"{told}; tightest: {tightest.limit}{whose}, margin {_amount(tightest.margin, tightest.unit)}"
-
-
 def _draw_curves(axes: "Axes", run: Run) -> None:
     traces = [judged.sensor.trace for judged in run.judged.sensors]
     start_s, end_s = min(t.start_s for t in traces), max(t.end_s for t in traces)
     levels, bounds = run.levels, run.bounds
     temperatures = [c for t in traces for c in (float(t.temperature_c.min()), float(t.temperature_c.max()))]
-    marks = [c for c in (levels.solidus_c, levels.liquidus_c, bounds.low, bounds.high) if c is not None]
+    own = [judged.sensor.limit_c for judged in run.judged.sensors]
+    known = (levels.solidus_c, levels.liquidus_c, bounds.low, bounds.high, *own)
+    marks = [c for c in known if c is not None]
     low_c, high_c = min(temperatures), max(*temperatures, *marks)
     room_c = 0.06 * (high_c - low_c)
     axes.set_xlim(start_s, end_s)
@@ -105,12 +96,14 @@ def _draw_curves(axes: "Axes", run: Run) -> None:
     _draw_window(axes, bounds.low, bounds.high)
     for k, judged in enumerate(run.judged.sensors):
         times, readings = thinned(judged.sensor.trace)
-        axes.plot(times, readings, color=_colour(k), linestyle=_style(judged, k), linewidth=1.4, zorder=5)
+        axes.plot(times, readings, color=colour_of(k), linestyle=style_of(judged, k), linewidth=1.4, zorder=5)
+        if judged.sensor.limit_c is not None:
+            axes.axhline(judged.sensor.limit_c, color=colour_of(k), linewidth=0.9, linestyle=":", zorder=3)
         axes.plot(
             judged.peak.time_s,
             judged.peak.value,
-            "o" if _passes(judged) else "X",
-            color=PASSES if _passes(judged) else FAILS,
+            "o" if passes(judged) else "X",
+            color=PASSES if passes(judged) else FAILS,
             markeredgecolor="white",
             markersize=6.5,
             zorder=7,
@@ -158,6 +151,7 @@ def _name(axes: "Axes", share: float, level_c: float, text: str, colour: str, si
         fontsize=8.0,
         color=colour,
         zorder=8,
+        bbox={"facecolor": "white", "alpha": 0.75, "edgecolor": "none", "pad": 0.8},
     )
 
 
@@ -181,8 +175,8 @@ def _draw_liquid(axes: "Axes", run: Run) -> None:
             axes.plot(
                 times,
                 100.0 * fractions,
-                color=_colour(k),
-                linestyle=_style(judged, k),
+                color=colour_of(k),
+                linestyle=style_of(judged, k),
                 linewidth=1.4,
                 zorder=5,
             )
@@ -196,86 +190,3 @@ def _draw_liquid(axes: "Axes", run: Run) -> None:
             fontsize=8.5,
             color=FAINT,
         )
-
-
-def _side_notes(run: Run) -> list[Note]:
-    judged, levels, bounds = run.judged, run.levels, run.bounds
-    colour = PASSES if judged.passed else FAILS
-    notes = [Note("Passed" if judged.passed else "Failed", head=True, colour=colour)]
-    failures = _failures(run)
-    notes += [Note(text, colour=FAILS) for text in failures[:MOST_FAILURES]]
-    if len(failures) > MOST_FAILURES:
-        notes.append(Note(f"and {len(failures) - MOST_FAILURES} more", colour=FAILS))
-    notes.append(Note("Window of the peak", head=True, colour=INVARIANT))
-    low, high = (None if c is None else both_scales(c) for c in (bounds.low, bounds.high))
-    notes.append(Note(f"lowest {low or 'not bounded'}"))
-    notes.append(Note(f"highest {high or 'not bounded'}"))
-    notes.append(Note("Melting range", head=True, colour=CAUTION))
-    notes += [
-        Note(f"solidus {both_scales(levels.solidus_c)}"),
-        Note(f"liquidus {both_scales(levels.liquidus_c)}"),
-        Note(f"target reached from {both_scales(levels.target_c)}"),
-    ]
-    notes.append(Note("Sensors and their peaks", head=True))
-    for k, sensor in enumerate(judged.sensors[:MOST_SENSORS]):
-        told = ", ".join(filter(None, ("part" if sensor.sensor.kind == "part" else "", _drawn(sensor, k))))
-        more = f" ({told})" if told else ""
-        text = f"{_short(sensor.sensor.trace.name)}{more}: {sensor.peak.value:.1f} °C"
-        notes.append(Note(text, swatch=_colour(k)))
-    if len(judged.sensors) > MOST_SENSORS:
-        notes.append(Note(f"and {len(judged.sensors) - MOST_SENSORS} more"))
-    notes.append(Note("Hold still", head=True))
-    lasts_s = judged.hold_still.lasts_s
-    lasts = "until after the record's end" if lasts_s is None else f"{lasts_s:.1f} s"
-    notes.append(Note(f"{lasts} (shaded), frozen below {run.hold_still_c:.1f} °C"))
-    return notes
-
-
-def _failures(run: Run) -> list[str]:
-    named: list[tuple[Checked, str]] = [
-        (check, f" of {_short(judged.sensor.trace.name)}")
-        for judged in run.judged.sensors
-        for check in judged.checks
-    ]
-    named += [(check, "") for check in run.judged.run_checks]
-    failed = [(check, whose) for check, whose in named if not check.passed]
-    failed.sort(key=lambda pair: (pair[0].tightness, pair[0].limit, pair[1]))
-    return [_failure(check, whose) for check, whose in failed]
-
-
-def _failure(check: Checked, whose: str) -> str:
-    if check.value is None:
-        return f"{check.limit}{whose}: {check.why}"
-    value, bound = _amount(check.value, check.unit), _amount(check.bound, check.unit)
-    return f"{check.limit}{whose}: {value}, {check.side} {bound}"
-
-
-def _amount(value: float, unit: str) -> str:
-    told = f"{value:.2f} {unit}" if unit == "°C/s" else f"{value:.1f} {unit}"
-    return told.replace("-", "−")
-
-
-def _short(name: str) -> str:
-    return name if len(name) <= 30 else f"{name[:29]}…"
-
-
-def _passes(judged: SensorJudged) -> bool:
-    return all(check.passed for check in judged.checks)
-
-
-def _colour(k: int) -> str:
-    return COLOURS[k % len(COLOURS)]
-
-
-def _style(judged: SensorJudged, k: int) -> str | tuple[int, Sequence[float]]:
-    return STYLES[_dashes(judged, k)]
-
-
-def _drawn(judged: SensorJudged, k: int) -> str:
-    """The style in words."""
-    return ("", "dashed", "dotted", "dash and dot")[_dashes(judged, k)]
-
-
-def _dashes(judged: SensorJudged, k: int) -> int:
-    """Parts are dashed; more sensors than colours are told apart by their dashes."""
-    return (k // len(COLOURS) + (1 if judged.sensor.kind == "part" else 0)) % len(STYLES)

@@ -2,12 +2,14 @@
 
 from collections.abc import Iterable
 
+from service.process.budget import NO_ERRORS
 from service.process.budget_asked import budget_shown
 from service.process.profiles.check import Run, checked_run
 from service.process.profiles.judge import SensorJudged
 from service.process.profiles.limits import Checked
 from service.process.sensors import hottest_true_c
-from service.process.window_terms import EarlierJoint
+from service.process.window_answer import terms_shown
+from service.process.window_terms import EarlierJoint, remelting_term
 from service.safety import safety_for
 from service.schemas.profile import ProfileQuestion
 from service.schemas.profile_verdict import (
@@ -121,6 +123,7 @@ def _earlier(run: Run, joint: EarlierJoint) -> EarlierJointSeen:
         name=joint.name,
         alloy=joint.subject.shown,
         max_liquid_fraction=joint.max_liquid_fraction,
+        bound=next(iter(terms_shown(remelting_term(joint, run.demands.budget))), None),
         liquid_mass_fraction=LiquidReached(
             nominal=melter.liquid_up_to(run.hottest_c), worst=melter.most_liquid_up_to(worst_c)
         ),
@@ -147,6 +150,12 @@ def _warnings(run: Run) -> list[WarningShown]:
     if not _feasible(run):
         text = "Nothing can meet this window: its minimum lies above its maximum, or the spread is too wide."
         shown.append(WarningShown(code="no-window", text=text))
+    if run.window is None and not run.demands.earlier_joints and run.demands.budget != NO_ERRORS:
+        text = (
+            "The window was given, and there are no earlier joints: the uncertainty budget that came with it "
+            "counts nowhere."
+        )
+        shown.append(WarningShown(code="budget-unused", text=text))
     if run.standard is not None and run.standard.note:
         text = f"{run.standard.key}: {run.standard.note}."
         shown.append(WarningShown(code="standard-note", text=text))
