@@ -98,7 +98,7 @@ def shortlist(chosen: Sequence[Filler], wanted: Wanted) -> Shortlist:
             excluded[filler.name] = looked.exclusions
         else:
             found.append(looked)
-    found.sort(key=lambda candidate: (-candidate.width_c, candidate.filler.name))
+    found.sort(key=lambda candidate: (-round(candidate.width_c, 6), candidate.filler.name))
     return Shortlist(tuple(found), tuple((f, excluded[f.name]) for f in chosen if f.name in excluded))
 
 

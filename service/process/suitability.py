@@ -53,6 +53,7 @@ KINDS: Mapping[str, Callable[[Filler], bool]] = {
     ),
     "soft solder without zinc": lambda f: KINDS["soft solder"](f) and "Zn" not in f.composition_wt,
     "soft solder with zinc": lambda f: KINDS["soft solder"](f) and "Zn" in f.composition_wt,
+    "solder not of zinc": lambda f: f.class_ == "solder" and not _most(f, "Zn"),
     "any solder": lambda f: f.class_ == "solder",
     "any braze": _braze,
     "braze without aluminium": lambda f: _braze(f) and not _most(f, "Al"),

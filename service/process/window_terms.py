@@ -4,6 +4,7 @@ from collections.abc import Mapping
 from dataclasses import dataclass
 
 from service.process.budget import Budget
+from service.process.data_uncertainty import PRINTED
 from service.process.placed import Placed
 from service.process.upper_limits import UpperKnown
 from service.process.window_parts import Part, Term, margin, superheat
@@ -121,7 +122,7 @@ def _kept(fraction: float) -> str:
 
 def _bound(subject: Placed) -> str:
     """Said where a temperature is a bound only."""
-    return " for certain, which is all its standard tells" if subject.melter.curve is None else ""
+    return " for certain, which is all its standard tells" if subject.melter.method == PRINTED else ""
 
 
 def _at_worst(

@@ -3,7 +3,7 @@
 from collections.abc import Iterable, Sequence
 from dataclasses import dataclass
 
-from service.process.data_uncertainty import data_uncertainty
+from service.process.data_uncertainty import PRINTED, data_uncertainty
 from service.process.known_limits import process_limit
 from service.process.placed import Placed
 from service.process.upper_limits import BASE_METAL
@@ -134,7 +134,7 @@ def _remembered(subjects: Iterable[Placed]) -> list[str]:
     for subject in subjects:
         melter, row = subject.melter, subject.alloy.filler
         if any(source.how == "from memory" for source in melter.sources):
-            told = f"{label(subject)} in the filler table" if melter.curve is None else melter.data_id
+            told = f"{label(subject)} in the filler table" if melter.method == PRINTED else melter.data_id
             texts[f"The data for {told} rest on values from memory: guidance, no claim."] = None
         if row is None:
             continue
