@@ -137,3 +137,30 @@ def test_faults_beside_long_columns_are_found(text, fault):
 def test_what_is_no_json_number_comes_through_for_the_models():
     body = ('{"b": [NaN, Infinity, 1e999], "a": ' + json.dumps(COLUMN) + "}").encode()
     assert str(read_json(body)["b"]) == "[nan, inf, inf]"
+
+
+COLUMN = json.dumps([round(0.01 * k, 2) for k in range(40_000)])
+
+
+@pytest.mark.parametrize(
+    ("inside", "path"),
+    [
+        ('"a": 1, "a": 2', ("a",)),
+        ('"a": [1, {"b": 1, "b": 2}]', ("a", 1, "b")),
+        ('"a": {"b": [[], {"c": 1, "c": 1}]}', ("a", "b", 1, "c")),
+        ('"name": "U7: [corner] {x}", "a": 1, "a": 2', ("a",)),
+    ],
+)
+def test_a_doubled_key_beside_a_long_column_is_found(inside, path):
+    with pytest.raises(DuplicateKey) as refused:
+        read_json(f'{{"column": {COLUMN}, {inside}}}'.encode())
+    assert refused.value.path == path
+
+
+@pytest.mark.parametrize(
+    "inside",
+    ['"a": 1', '"name": "U7: [corner] {x}"', '"a": [1, {"b": [2, [3]]}]', '"a": [[], {}, {"b": {}}]'],
+)
+def test_a_long_body_reads_as_any_other(inside):
+    text = f'{{"column": {COLUMN}, {inside}}}'
+    assert read_json(text.encode()) == json.loads(text)

@@ -5,6 +5,7 @@ Nothing is mended silently: each repair that was made is listed with the sensor 
 
 from collections.abc import Sequence
 from dataclasses import dataclass
+from functools import cached_property
 
 import numpy as np
 from numpy.typing import NDArray
@@ -66,13 +67,17 @@ def traces_of(channels: Sequence[Channel], rules: Rules) -> Recording:
     _check_names(channels)
     mended: list[Mended] = []
     traces = []
+    clocks: dict[int, _Clock] = {}  # most sensors share their times
     for channel in channels:
         held = np.isfinite(channel.temperature_c)
         if not held.any():
             _mend("leave out empty sensors", channel, "holds no reading.", rules)
             mended.append(Mended("leave out empty sensors", channel.name, len(held)))
             continue
-        traces.append(_trace(channel, held, rules, mended))
+        key = id(channel.time_s)
+        if key not in clocks:
+            clocks[key] = _Clock(channel.time_s)
+        traces.append(_trace(channel, held, rules, mended, clocks[key]))
     if not traces:
         raise InvalidInput(
             "No sensor holds any reading.", field="sensors", remedy="Send a record with readings in it."
@@ -80,7 +85,30 @@ def traces_of(channels: Sequence[Channel], rules: Rules) -> Recording:
     return Recording(tuple(traces), tuple(mended))
 
 
-def _trace(channel: Channel, held: Flags, rules: Rules, mended: list[Mended]) -> Trace:
+class _Clock:
+    """What there is to know of a column of times, found out once."""
+
+    def __init__(self, times: Floats) -> None:
+        self.times = times
+        self.steps = np.diff(times)
+
+    @cached_property
+    def in_order(self) -> bool:
+        """Whether no time is earlier than, or the same as, the one before."""
+        return bool((self.steps > 0.0).all())
+
+    @cached_property
+    def usual_s(self) -> float:
+        """The interval in the middle of all."""
+        return float(np.median(self.steps))
+
+    @cached_property
+    def longest_s(self) -> float:
+        """The longest interval."""
+        return float(self.steps.max())
+
+
+def _trace(channel: Channel, held: Flags, rules: Rules, mended: list[Mended], clock: _Clock) -> Trace:
     number = np.arange(len(held))  # of the samples as they were sent, for messages
     times, readings = channel.time_s, channel.temperature_c
     if not held.all():
@@ -90,6 +118,30 @@ def _trace(channel: Channel, held: Flags, rules: Rules, mended: list[Mended]) ->
         mended.append(Mended("leave out missing samples", channel.name, missing))
         times, readings, number = times[held], readings[held], number[held]
     _check_span(channel, readings, number)
+    if len(times) != len(clock.times):
+        clock = _Clock(times)
+    if not clock.in_order:
+        times, readings, number = _put_in_order(channel, times, readings, number, rules, mended)
+        clock = _Clock(times)
+    jumped = _jumped(channel, clock, readings, number, rules)
+    if jumped.any():
+        mended.append(Mended("leave out jumps", channel.name, int(np.count_nonzero(jumped))))
+        times, readings, number = times[~jumped], readings[~jumped], number[~jumped]
+        clock = _Clock(times)
+    if len(times) < 2:
+        raise InvalidInput(
+            f"{_named(channel)} has fewer than two samples to judge.",
+            field=channel.field,
+            remedy="Send at least two samples of every sensor, or leave the sensor out.",
+        )
+    _check_gaps(channel, clock, number, rules, mended)
+    return Trace(channel.name, times, readings)
+
+
+def _put_in_order(
+    channel: Channel, times: Floats, readings: Floats, number: Ints, rules: Rules, mended: list[Mended]
+) -> tuple[Floats, Floats, Ints]:
+    """Times that only rise: sorted, those that stand twice merged, if that was asked for."""
     steps = np.diff(times)
     if (steps < 0.0).any():
         k = int(np.argmax(steps < 0.0)) + 1
@@ -108,23 +160,13 @@ def _trace(channel: Channel, held: Flags, rules: Rules, mended: list[Mended]) ->
             times, return_index=True, return_inverse=True, return_counts=True
         )
         readings, number = np.bincount(where, weights=readings) / counts, number[first]
-    jumped = _jumped(channel, times, readings, number, rules)
-    if jumped.any():
-        mended.append(Mended("leave out jumps", channel.name, int(np.count_nonzero(jumped))))
-        times, readings, number = times[~jumped], readings[~jumped], number[~jumped]
-    if len(times) < 2:
-        raise InvalidInput(
-            f"{_named(channel)} has fewer than two samples to judge.",
-            field=channel.field,
-            remedy="Send at least two samples of every sensor, or leave the sensor out.",
-        )
-    _check_gaps(channel, times, number, rules, mended)
-    return Trace(channel.name, times, readings)
+    return times, readings, number
 
 
-def _jumped(channel: Channel, times: Floats, readings: Floats, number: Ints, rules: Rules) -> Flags:
+def _jumped(channel: Channel, clock: _Clock, readings: Floats, number: Ints, rules: Rules) -> Flags:
     """Samples reached by a jump, up to the next one reached without: a torn wire reads nonsense a while."""
-    size, steps = np.abs(np.diff(readings)), np.diff(times)
+    times, steps = clock.times, clock.steps
+    size = np.abs(np.diff(readings))
     jumps = (size > JUMP_C) & (size > rules.fastest_c_per_s * steps)
     jumped = np.zeros(len(times), dtype=np.bool_)
     if not jumps.any():
@@ -143,14 +185,13 @@ def _jumped(channel: Channel, times: Floats, readings: Floats, number: Ints, rul
     return jumped
 
 
-def _check_gaps(channel: Channel, times: Floats, number: Ints, rules: Rules, mended: list[Mended]) -> None:
-    steps = np.diff(times)
+def _check_gaps(channel: Channel, clock: _Clock, number: Ints, rules: Rules, mended: list[Mended]) -> None:
     longest = rules.longest_gap_s
     if longest is None:
-        longest = max(LEAST_GAP_S, GAP_INTERVALS * float(np.median(steps)))
-    gaps = steps > longest
-    if not gaps.any():
+        longest = max(LEAST_GAP_S, GAP_INTERVALS * clock.usual_s)
+    if clock.longest_s <= longest:
         return
+    times, gaps = clock.times, clock.steps > longest
     k = int(np.argmax(gaps))
     what = f"pauses from {times[k]:g} to {times[k + 1]:g} s; more than {longest:g} s counts as a gap here."
     _mend("bridge gaps", channel, what, rules, int(number[k + 1]), " or set longest_gap_s")
