@@ -139,7 +139,7 @@ def test_what_is_no_json_number_comes_through_for_the_models():
     assert str(read_json(body)["b"]) == "[nan, inf, inf]"
 
 
-COLUMN = json.dumps([round(0.01 * k, 2) for k in range(40_000)])
+LONG_COLUMN = json.dumps([round(0.01 * k, 2) for k in range(40_000)])
 
 
 @pytest.mark.parametrize(
@@ -153,7 +153,7 @@ COLUMN = json.dumps([round(0.01 * k, 2) for k in range(40_000)])
 )
 def test_a_doubled_key_beside_a_long_column_is_found(inside, path):
     with pytest.raises(DuplicateKey) as refused:
-        read_json(f'{{"column": {COLUMN}, {inside}}}'.encode())
+        read_json(f'{{"column": {LONG_COLUMN}, {inside}}}'.encode())
     assert refused.value.path == path
 
 
@@ -162,5 +162,5 @@ def test_a_doubled_key_beside_a_long_column_is_found(inside, path):
     ['"a": 1', '"name": "U7: [corner] {x}"', '"a": [1, {"b": [2, [3]]}]', '"a": [[], {}, {"b": {}}]'],
 )
 def test_a_long_body_reads_as_any_other(inside):
-    text = f'{{"column": {COLUMN}, {inside}}}'
+    text = f'{{"column": {LONG_COLUMN}, {inside}}}'
     assert read_json(text.encode()) == json.loads(text)
