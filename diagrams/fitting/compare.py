@@ -12,7 +12,7 @@ from importlib.resources import files
 from pathlib import Path
 
 from diagrams.alloys import alloy_from_designation
-from diagrams.comparison import COLUMNS, TABLE, Compared
+from diagrams.comparison import COLUMNS, DRAWN_THROUGH_PRINTS, TABLE, Compared
 from diagrams.errors import DiagramsError, UnknownAlloy
 from diagrams.files.catalog import catalog
 from diagrams.fillers import Filler, fillers, find_filler
@@ -21,7 +21,6 @@ from diagrams.fitting.systems import read_system_fit, system_fit_ids
 from diagrams.many.reading import read_system, system_ids
 from diagrams.questions.melt import melter_for
 
-DRAWN_THROUGH_PRINTS = frozenset({"ag-pd", "in-pb", "sb-sn"})
 COMMENT = (
     "# Computed less printed solidus and liquidus, °C, of every filler that is computed; python -m "
     "diagrams.fitting.compare writes it.\n"

@@ -10,7 +10,7 @@ import statistics
 from collections.abc import Sequence
 from dataclasses import dataclass
 
-from diagrams.comparison import Compared, compared, comparison_edition
+from diagrams.comparison import DRAWN_THROUGH_PRINTS, Compared, compared, comparison_edition
 from diagrams.questions.melter import Melter
 
 SHARE = 0.9
@@ -37,6 +37,9 @@ def data_uncertainty(melter: Melter, fraction: float) -> DataUncertainty:
     printed = [row for row in compared() if filler is not None and row.filler == filler.name]
     if melter.method == PRINTED and not printed:
         reason = "Printed temperatures stand in for data; how far they are off was never compared: 0 counted."
+        return DataUncertainty(0.0, reason, known=False)
+    if melter.data_id in DRAWN_THROUGH_PRINTS:
+        reason = f"{melter.data_id} is drawn through printed temperatures, which cannot check it: 0 counted."
         return DataUncertainty(0.0, reason, known=False)
     data_id = printed[0].data_id if printed else melter.data_id
     own = [row for row in compared() if row.data_id == data_id]

@@ -122,7 +122,7 @@ def _not_compared(subjects: Iterable[Placed]) -> list[str]:
     """Alloys of whose data nothing tells how far they are off, each once."""
     lacking = [subject for subject in subjects if not data_uncertainty(subject.melter, 1.0).known]
     texts = [
-        f"Printed temperatures of {label(subject)} stand in for data: no uncertainty of theirs is counted."
+        f"Nothing tells how far the data for {label(subject)} may be off: none of it is counted."
         for subject in lacking
     ]
     return list(dict.fromkeys(texts))

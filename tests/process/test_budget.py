@@ -151,6 +151,20 @@ def test_data_are_judged_by_their_own_row_then_by_their_system():
     assert none_c == pytest.approx(statistics.quantiles(pairs, n=10, method="inclusive")[-1])
     printed = data_uncertainty(placed(AlloyAsked(designation="BAg-1")).melter, 1.0)
     assert (printed.value_c, printed.known) == (0.0, False)
+    through = data_uncertainty(placed(AlloyAsked(designation="Sn95Sb5")).melter, 1.0)  # drawn through prints
+    assert (through.value_c, through.known) == (0.0, False)
+
+
+def test_few_rows_make_no_nine_tenths():
+    """Gold–tin has one row, off by 2.79 °C: it counts whole, and at least the median of all."""
+    melter = placed(AlloyAsked(composition_wt={"Au": 79, "Sn": 21})).melter
+    pairs = [abs(row.liquidus_off_c) for row in compared() if row.data_id.count("-") == 1]
+    own = [abs(row.liquidus_off_c) for row in compared() if row.data_id == "au-sn"]
+    found = data_uncertainty(melter, 1.0)
+    assert found.value_c == pytest.approx(max(*own, statistics.median(pairs)))
+    assert "the worst of 1 filler" in found.reason
+    system = data_uncertainty(placed(SOFT).melter, 1.0).reason
+    assert "used in fits" in system
 
 
 def test_between_solidus_and_liquidus_the_worse_end_counts():
