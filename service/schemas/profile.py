@@ -17,7 +17,7 @@ from service.schemas.window import (
 
 Times = Annotated[list[float], Field(max_length=MOST_SAMPLES, fail_fast=True)]
 Readings = Annotated[list[float | None], Field(max_length=MOST_SAMPLES, fail_fast=True)]
-Seconds = Annotated[float, Field(gt=0, le=1e7)]
+Seconds = Annotated[float, Field(ge=1e-6, le=1e7)]
 Amount = Annotated[float, Field(ge=0, le=1e7)]
 
 STANDARD_PROFILE = (

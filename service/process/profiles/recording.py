@@ -20,6 +20,7 @@ Ints = NDArray[np.int64]
 GAP_INTERVALS = 10.0  # a pause longer than this many usual intervals is a gap
 LEAST_GAP_S = 2.0  # but pauses up to this are none
 JUMP_C = 30.0  # a change from sample to sample of more than this, at more than the fastest rate, is a jump
+LATEST_S, SHORTEST_S = 1e13, 1e-6  # milliseconds since 1970 are still believed
 COLDEST_C, HOTTEST_C = -200.0, 3000.0
 
 
@@ -118,6 +119,7 @@ def _trace(channel: Channel, held: Flags, rules: Rules, mended: list[Mended], cl
         mended.append(Mended("leave out missing samples", channel.name, missing))
         times, readings, number = times[held], readings[held], number[held]
     _check_span(channel, readings, number)
+    _check_times(channel, times, number)
     if len(times) != len(clock.times):
         clock = _Clock(times)
     if not clock.in_order:
@@ -167,7 +169,8 @@ def _jumped(channel: Channel, clock: _Clock, readings: Floats, number: Ints, rul
     """Samples reached by a jump, up to the next one reached without: a torn wire reads nonsense a while."""
     times, steps = clock.times, clock.steps
     size = np.abs(np.diff(readings))
-    jumps = (size > JUMP_C) & (size > rules.fastest_c_per_s * steps)
+    with np.errstate(over="ignore"):  # after an endless pause nothing is a jump
+        jumps = (size > JUMP_C) & (size > rules.fastest_c_per_s * steps)
     jumped = np.zeros(len(times), dtype=np.bool_)
     if not jumps.any():
         return jumped
@@ -207,6 +210,23 @@ def _check_span(channel: Channel, readings: Floats, number: Ints) -> None:
             f"{COLDEST_C:g} to {HOTTEST_C:g} °C.",
             field=f"{channel.field}.temperature_c.{number[k]}",
             remedy="Send degrees Celsius; take the readings of a broken sensor out.",
+        )
+
+
+def _check_times(channel: Channel, times: Floats, number: Ints) -> None:
+    wrong = np.abs(times) > LATEST_S
+    if wrong.any():
+        k = int(np.argmax(wrong))
+        raise InvalidInput(
+            f"{_named(channel)} has a sample at {times[k]:g} s; possible is up to {LATEST_S:g} s either way.",
+            field=f"{channel.field}.time_s.{number[k]}",
+            remedy="Send seconds, from the start of the run or from any other moment.",
+        )
+    if len(times) > 1 and float(np.ptp(times)) < SHORTEST_S:
+        raise InvalidInput(
+            f"{_named(channel)} lasts less than {SHORTEST_S:g} s.",
+            field=f"{channel.field}.time_s",
+            remedy="Send seconds, and at least two samples at different times.",
         )
 
 

@@ -24,7 +24,12 @@ NUMBER = re.compile(r"[+-]?(\d+([.,]\d*)?|[.,]\d+)([eE][+-]?\d+)?")
 def channels_from(text: str) -> tuple[Channel, ...]:
     """The columns of a table; empty cells are missing samples. Raises InvalidInput naming line and column."""
     text = text.removeprefix("\ufeff")
-    lines = [line for line in text.splitlines() if line.strip() and not line.startswith("#")]
+    numbered = [
+        (number, line)
+        for number, line in enumerate(text.splitlines(), 1)
+        if line.strip() and not line.startswith("#")
+    ]
+    lines, at = [line for _, line in numbered], [number for number, _ in numbered[1:]]
     if len(lines) < 2:
         raise _wrong("The table holds no samples.", "Send a line of names and at least two lines of numbers.")
     separator = next((s for s in SEPARATORS if s in lines[0]), None)
@@ -34,6 +39,11 @@ def channels_from(text: str) -> tuple[Channel, ...]:
             "Part the columns by semicolon, tab or comma: time first, then one column a sensor.",
         )
     names = [name.strip() for name in _rows(lines[:1], separator)[0]]
+    if all(NUMBER.fullmatch(name) for name in names):
+        raise _wrong(
+            "The first line holds numbers where the names should stand.",
+            "Begin with a line of names: time, then one name a sensor.",
+        )
     if len(names) - 1 > MOST_SENSORS or len(lines) - 1 > MOST_SAMPLES:
         raise _wrong(
             f"The table has {len(names) - 1} sensors and {len(lines) - 1} samples.",
@@ -41,10 +51,10 @@ def channels_from(text: str) -> tuple[Channel, ...]:
         )
     values = _quick(lines[1:], len(names), separator)
     if values is None:
-        values = _numbers(_rows(lines[1:], separator), len(names), separator)
+        values = _numbers(_rows(lines[1:], separator), at, len(names), separator)
     times = values[:, 0]
     if not np.isfinite(times).all():
-        line = int(np.argmin(np.isfinite(times))) + 2
+        line = at[int(np.argmin(np.isfinite(times)))]
         raise _wrong(f"Line {line} has no time.", "Give every line a time in seconds, in the first column.")
     return tuple(
         Channel(name, times, values[:, k + 1], f"table.column {k + 2}") for k, name in enumerate(names[1:])
@@ -71,17 +81,21 @@ def _rows(lines: Sequence[str], separator: str) -> list[list[str]]:
     if not any('"' in line for line in lines):  # the usual case, several times faster
         return [line.split(separator) for line in lines]
     try:
-        return list(csv.reader(io.StringIO("\n".join(lines)), delimiter=separator, strict=True))
+        rows = list(csv.reader(io.StringIO("\n".join(lines)), delimiter=separator, strict=True))
     except csv.Error as error:
         raise _wrong(f"The table cannot be read: {error}.", "Check the quotes (RFC 4180).") from error
+    if len(rows) != len(lines):
+        raise _wrong("A quoted cell runs over several lines.", "Keep every cell on one line.")
+    return rows
 
 
-def _numbers(rows: Sequence[Sequence[str]], width: int, separator: str) -> Floats:
-    for k, row in enumerate(rows):
+def _numbers(rows: Sequence[Sequence[str]], at: Sequence[int], width: int, separator: str) -> Floats:
+    """Cell by cell; `at` are the numbers of their lines in the table."""
+    for line, row in zip(at, rows, strict=True):
         if len(row) != width:
             hint = " A decimal comma needs columns parted by semicolon or tab." if separator == "," else ""
             raise _wrong(
-                f"Line {k + 2} has {len(row)} columns, the first line {width}.",
+                f"Line {line} has {len(row)} columns, the first line {width}.",
                 f"Give every line as many columns as there are names; empty cells may be empty.{hint}",
             )
     cells = [cell.strip() for row in rows for cell in row]
@@ -94,11 +108,18 @@ def _numbers(rows: Sequence[Sequence[str]], width: int, separator: str) -> Float
     for k, cell in enumerate(cells):
         if cell and not NUMBER.fullmatch(cell):
             raise _wrong(
-                f"Line {k // width + 2}, column {k % width + 1}: “{cell[:40]}” is no number.",
+                f"Line {at[k // width]}, column {k % width + 1}: “{cell[:40]}” is no number.",
                 "Send plain numbers; leave the cell of a missing sample empty.",
             )
     plain = [cell.replace(",", ".") if cell else "nan" for cell in cells]
-    return np.array(plain).astype(np.float64).reshape(len(rows), width)
+    values = np.array(plain).astype(np.float64)
+    if np.isinf(values).any():
+        k = int(np.argmax(np.isinf(values)))
+        raise _wrong(
+            f"Line {at[k // width]}, column {k % width + 1}: “{cells[k][:40]}” is too large a number.",
+            "Send seconds and degrees Celsius.",
+        )
+    return values.reshape(len(rows), width)
 
 
 def _wrong(what: str, remedy: str) -> InvalidInput:
