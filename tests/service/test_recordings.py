@@ -3,6 +3,8 @@
 import json
 
 import pytest
+from hypothesis import given, settings
+from hypothesis import strategies as st
 
 from service.routes.profiles import EXAMPLES, PARTS_EXAMPLE
 
@@ -123,3 +125,17 @@ def test_parameters_have_no_place_beside_them(ask):
 
 def test_other_addresses_take_no_parts(ask):
     assert send(ask, address="/v1/window").status_code == 415
+
+
+@settings(max_examples=100)
+@given(
+    content=st.binary(max_size=200), first=st.sampled_from([b"", b"time,a\n0,20\n", b"#? alloy=Sn63Pb37\n"])
+)
+def test_any_bytes_in_a_part_never_fail_us(ask, content, first):
+    question = json.dumps(QUESTION).encode()
+    for parts in ({"question": question, "table": first + content}, {"question": content, "table": TABLE}):
+        answer = ask("POST", CHECK, files={name: ("a", part) for name, part in parts.items()})
+        assert answer.status_code in (200, 400, 422), answer.text
+        assert answer.json()["safety"]["notes"]
+        if answer.status_code != 200:
+            assert all(error["field"] and error["remedy"] for error in answer.json()["errors"])
