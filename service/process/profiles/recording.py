@@ -180,8 +180,17 @@ def _jumped(channel: Channel, clock: _Clock, readings: Floats, number: Ints, rul
         f"{number[k]}), faster than {rules.fastest_c_per_s:g} °C/s: a loose or broken sensor, most likely."
     )
     _mend("leave out jumps", channel, what, rules, int(number[k]), " or set fastest_c_per_s")
-    last = 0
-    for j in range(1, len(times)):
+    # a record may begin with nonsense, too: the side of the first jump that leaves more is believed
+    first, behind = (_left_behind(clock.times, readings, rules, start) for start in (0, k))
+    return first if np.count_nonzero(first) <= np.count_nonzero(behind) else behind
+
+
+def _left_behind(times: Floats, readings: Floats, rules: Rules, start: int) -> Flags:
+    """Samples that cannot be reached from one that is believed, those before it among them."""
+    jumped = np.zeros(len(times), dtype=np.bool_)
+    jumped[:start] = True
+    last = start
+    for j in range(start + 1, len(times)):
         apart = abs(readings[j] - readings[last])
         jumped[j] = apart > JUMP_C and apart > rules.fastest_c_per_s * (times[j] - times[last])
         last = last if jumped[j] else j

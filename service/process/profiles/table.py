@@ -1,7 +1,7 @@
 """Recordings as text tables: time in the first column, one sensor a column, names in the first line.
 
 Columns are parted by semicolon, tab or comma; with the first two, numbers may have a decimal comma. RFC 4180
-quotes are understood. Lines that begin with # are none of the table.
+quotes are understood. Lines that begin with # are none of the table, unless they have its columns.
 """
 
 import csv
@@ -18,6 +18,7 @@ from service.schemas.profile_words import MOST_SAMPLES, MOST_SENSORS
 
 SEPARATORS = (";", "\t", ",")
 PLAIN = re.compile(r"[0-9eE+\-.,; \t\n]*")
+QUOTED = re.compile(r'"[^"]*"')
 NUMBER = re.compile(r"[+-]?(\d+([.,]\d*)?|[.,]\d+)([eE][+-]?\d+)?")
 
 
@@ -32,7 +33,8 @@ def channels_from(text: str) -> tuple[Channel, ...]:
     lines, at = [line for _, line in numbered], [number for number, _ in numbered[1:]]
     if len(lines) < 2:
         raise _wrong("The table holds no samples.", "Send a line of names and at least two lines of numbers.")
-    separator = next((s for s in SEPARATORS if s in lines[0]), None)
+    bare = QUOTED.sub("", lines[0])
+    separator = next((s for s in SEPARATORS if s in bare), None)
     if separator is None:
         raise _wrong(
             "The first line has a single column.",
@@ -44,6 +46,7 @@ def channels_from(text: str) -> tuple[Channel, ...]:
             "The first line holds numbers where the names should stand.",
             "Begin with a line of names: time, then one name a sensor.",
         )
+    _check_comments(text, numbered[0][0], separator, len(names))
     if len(names) - 1 > MOST_SENSORS or len(lines) - 1 > MOST_SAMPLES:
         raise _wrong(
             f"The table has {len(names) - 1} sensors and {len(lines) - 1} samples.",
@@ -59,6 +62,20 @@ def channels_from(text: str) -> tuple[Channel, ...]:
     return tuple(
         Channel(name, times, values[:, k + 1], f"table.column {k + 2}") for k, name in enumerate(names[1:])
     )
+
+
+def _check_comments(text: str, names_at: int, separator: str, width: int) -> None:
+    """Refuse what looks like a remark and is a sample: spreadsheets write #N/A and the like into cells."""
+    for number, line in enumerate(text.splitlines(), 1):
+        if number <= names_at or not line.startswith("#"):
+            continue
+        readings = [cell.strip().strip('"') for cell in line.split(separator)[1:]]
+        sampled = any(readings) and all(not cell or NUMBER.fullmatch(cell) for cell in readings)
+        if sampled and len(readings) == width - 1:
+            raise _wrong(
+                f"Line {number} begins with # and has the readings of a sample, but no time.",
+                "Give it a time, or take it out; remarks may stand above the names.",
+            )
 
 
 def _quick(lines: Sequence[str], width: int, separator: str) -> Floats | None:

@@ -118,3 +118,17 @@ def test_a_given_gap_length_decides() -> None:
     with pytest.raises(InvalidInput, match="pauses"):
         traces_of([channel()], Rules(longest_gap_s=0.5))
     assert traces_of([with_a_gap()], Rules(longest_gap_s=20.0)).mended == ()
+
+
+@pytest.mark.parametrize("wrong", [[0], [0, 1, 2], [40], [40, 41], [79], [78, 79]])
+def test_the_side_of_a_jump_that_leaves_more_is_believed(wrong: list[int]) -> None:
+    """A wire off at the start, on the way or at the end: those samples go and no others."""
+    times = np.arange(80.0)
+    readings = 24.0 + 0.95 * times
+    spoilt = readings.copy()
+    spoilt[wrong] = 1500.0
+    channel = Channel("pad", times, spoilt, "sensors.0")
+    mended = traces_of([channel], Rules(frozenset({"leave out jumps"})))
+    (trace,) = mended.traces
+    assert [m.count for m in mended.mended if m.repair == "leave out jumps"] == [len(wrong)]
+    assert trace.temperature_c.tolist() == np.delete(readings, wrong).tolist()
