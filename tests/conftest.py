@@ -50,12 +50,15 @@ def ask(app: FastAPI) -> Ask:
 @pytest.fixture(scope="session")
 def server() -> Iterator[str]:
     """Start `python -m service` on a free port and return its address."""
-    with running_server() as address:
+    with RunningServer() as address:
         yield address
 
 
-class running_server:  # noqa: N801  # used as a statement: with running_server("--root-path", "/x") as address
-    """Starts `python -m service --port 0` with further arguments; stops it with SIGTERM."""
+class RunningServer:
+    """Starts `python -m service --port 0` with further arguments; stops it with SIGTERM.
+
+    As a statement: `with RunningServer("--root-path", "/x") as address`.
+    """
 
     def __init__(self, *arguments: str) -> None:
         self.arguments = arguments

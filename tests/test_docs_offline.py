@@ -10,7 +10,7 @@ from collections.abc import Iterator
 import pytest
 from playwright.sync_api import Page, expect, sync_playwright
 
-from tests.conftest import running_server
+from tests.conftest import RunningServer
 
 pytestmark = pytest.mark.browser
 CHROMIUM = "/usr/bin/chromium"
@@ -48,7 +48,7 @@ class Visit:
 def visit(request) -> Iterator[Visit]:
     """Open /docs of a running server; with a prefix, as a proxy that keeps it would."""
     arguments = ["--root-path", request.param] if request.param else []
-    with running_server(*arguments) as address, sync_playwright() as playwright:
+    with RunningServer(*arguments) as address, sync_playwright() as playwright:
         browser = playwright.chromium.launch(executable_path=CHROMIUM, args=FLAGS)
         made = Visit(browser.new_page(viewport={"width": 1280, "height": 1000}), address)
         made.page.goto(f"{address}{request.param}/docs")

@@ -1,6 +1,7 @@
 """A shortlist between the wire and the rules."""
 
 from collections.abc import Sequence
+from dataclasses import replace
 
 from diagrams.elements import symbol
 from diagrams.errors import InvalidInput
@@ -88,25 +89,18 @@ def _demands(question: ShortlistQuestion, bases: Sequence[UpperKnown]) -> Demand
     check_effort(
         [(f"earlier_joints.{k}.alloy", joint.subject) for k, joint in enumerate(joints)], tolerances=True
     )
-    return Demands(
-        target_liquid_fraction=own.target_liquid_fraction,
-        superheat_c=own.superheat_c,
-        spread_c=own.spread_c,
-        budget=own.budget,
-        upper_limits=(*own.upper_limits, *limits),
-        earlier_joints=joints,
-    )
+    return replace(own, upper_limits=(*own.upper_limits, *limits))
 
 
 def _check_names(question: ShortlistQuestion, taken: set[str]) -> None:
-    """The limits made of base metals and of the highest peak have names of their own."""
+    """The limits that a shortlist makes by itself have names of their own."""
     folded = {name.casefold() for name in taken}
     given = [(f"upper_limits.{k}", limit.name) for k, limit in enumerate(question.upper_limits)]
     given += [(f"earlier_joints.{k}", joint.name) for k, joint in enumerate(question.earlier_joints)]
     for field, name in given:
         if " ".join(name.split()).casefold() in folded:
             raise InvalidInput(
-                f"The name “{name}” is that of a limit made of base_metals or highest_peak_c.",
+                f"The name “{name}” is that of a limit that the shortlist makes by itself.",
                 field=f"{field}.name",
                 remedy="Give it another name.",
             )

@@ -109,7 +109,6 @@ def find_window(
         with about(joint.subject, f"earlier_joints.{k}.alloy"):
             starts.append(joint.subject.melter.kept(0.0))
             upper += remelting_term(joint, budget)
-    verdict = judge(lower, upper, demands.spread_c, demands.earlier_joints)
     combined = {
         by: judge(
             [term.by(by) for term in lower],
@@ -119,6 +118,7 @@ def find_window(
         )
         for by in (WORST_CASE, ROOT_SUM_SQUARE)
     }
+    verdict = combined[budget.combination]
     maximum_c = None if verdict.upper is None else verdict.upper.value_c
     seen = tuple(
         _seen(joint, start, maximum_c, budget.sensor)

@@ -14,6 +14,7 @@ router = new_router("Diagrams")
 DiagramId = Annotated[
     str,
     Path(
+        alias="id",
         min_length=1,
         max_length=40,
         description="Id of a diagram: element symbols in alphabetical order, such as `pb-sn`.",
@@ -31,6 +32,6 @@ async def list_diagrams() -> DiagramsAnswer:
 
 
 @router.get("/diagrams/{id}", summary="One diagram: fields, invariants, compounds")
-async def get_diagram(id: DiagramId) -> DiagramAnswer:  # noqa: A002  # the name in the address
+async def get_diagram(diagram_id: DiagramId) -> DiagramAnswer:
     """Give the fields as polygons (x = mass percent of the second element, y = °C) and the invariants."""
-    return diagram_shown(catalog().get(id))
+    return diagram_shown(catalog().get(diagram_id))

@@ -41,13 +41,13 @@ TargetQuery = Annotated[
     "/diagrams/{id}/figure", summary="Picture of a diagram", response_class=Response, responses=PICTURE
 )
 def get_diagram_figure(
-    id: DiagramId,  # noqa: A002  # the name in the address
+    diagram_id: DiagramId,
     form: FormatQuery = "png",
     second_wt: SecondQuery = None,
     temperature_c: PointQuery = None,
 ) -> Response:
     """Draw a stored diagram; with `second_wt` and `temperature_c` the point, its tie line and amounts too."""
-    picture = diagram_picture(catalog().get(id), second_wt, temperature_c, form)
+    picture = diagram_picture(catalog().get(diagram_id), second_wt, temperature_c, form)
     return Response(picture, media_type=MEDIA_TYPES[form])
 
 

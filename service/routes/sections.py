@@ -37,6 +37,7 @@ EXAMPLES = {
 SectionId = Annotated[
     str,
     Path(
+        alias="id",
         min_length=1,
         max_length=40,
         description="Id of a section, as `GET /v1/sections` or `POST /v1/sections` gives it.",
@@ -62,14 +63,14 @@ def ask_section(question: Annotated[SectionQuestion, Body(openapi_examples=EXAMP
 
 
 @router.get("/sections/{id}", summary="One section, by its id", response_model=SectionAnswer)
-def get_section(id: SectionId) -> Response:  # noqa: A002  # the name in the address
+def get_section(section_id: SectionId) -> Response:
     """Give a stored section, or one computed before and still kept."""
-    return Response(section_json(known_section(id)), media_type=JSON)
+    return Response(section_json(known_section(section_id)), media_type=JSON)
 
 
 @router.get(
     "/sections/{id}/figure", summary="Picture of a section", response_class=Response, responses=PICTURE
 )
-def get_section_figure(id: SectionId, form: FormatQuery = "png") -> Response:  # noqa: A002  # as above
+def get_section_figure(section_id: SectionId, form: FormatQuery = "png") -> Response:
     """Draw a section with its fields, levels and lines of equal liquid share."""
-    return Response(section_picture(known_section(id), form), media_type=MEDIA_TYPES[form])
+    return Response(section_picture(known_section(section_id), form), media_type=MEDIA_TYPES[form])

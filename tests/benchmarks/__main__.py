@@ -6,6 +6,7 @@ import sys
 import time
 from collections.abc import Callable
 from concurrent.futures import ProcessPoolExecutor
+from pathlib import Path
 
 import numpy as np
 from fastapi import FastAPI
@@ -29,7 +30,7 @@ from service.routes.strict import StrictRoute
 from service.schemas.base import AnswerModel, StrictModel
 from service.settings import Settings
 from tests.benchmarks.harness import Driver, ratio, slice_seconds
-from tests.conftest import running_server
+from tests.conftest import RunningServer
 from tests.diagrams.minimised import phases_at
 
 
@@ -111,7 +112,8 @@ def library() -> None:
         x = rng.uniform(*one.composition_range_wt, 100_000)
         t = rng.uniform(*one.temperature_range_c, 100_000)
         locate_many(one, x[:10], t[:10])
-        worst = max(worst, slice_seconds(lambda: locate_many(one, x, t), 3) / 100_000)  # noqa: B023  # run at once
+        once = slice_seconds(lambda one=one, x=x, t=t: locate_many(one, x, t), 3)
+        worst = max(worst, once / 100_000)
     say("library bulk query, slowest diagram", f"{worst * 1e6:.2f} us a point", "<= 0.5 us a point")
     x40 = second_wt_to_x(40.0, "Pb", "Sn")
     times, minimised, read = ratio(
@@ -128,7 +130,7 @@ def many() -> None:
     """Alloys of many elements: a curve, a tolerance, a section new and cached, freezing."""
     alloy = parse_alloy("Sn90Ag3Cu0.5Pb6.5")
     finder = StateFinder(place_many(alloy), alloy.composition_wt)
-    finder.place.sample  # noqa: B018  # prepared once a service
+    assert finder.place.sample  # prepared once a service
     temperatures_c = np.linspace(150.0, 250.0, 300).tolist()
 
     def whole() -> list[float]:
@@ -141,7 +143,7 @@ def many() -> None:
     spans = timed(lambda: (sac.kept(0.0), sac.needed(1.0)))
     say("SAC305 with tolerance, first time", f"{spans:.2f} s", "(none set)")
     line = line_between({"Sn": 96.5, "Ag": 3.0, "Cu": 0.5}, {"Cu": 100.0}, 5.0)
-    line.sample  # noqa: B018  # likewise
+    assert line.sample  # likewise
     built = timed(lambda: build_section(line, "x", "a", "b"))
     say("a new section, SAC305 to 5 % copper", f"{built:.1f} s", "< 3 s")
     driver = Driver(app_with_echo())
@@ -208,7 +210,7 @@ def start() -> None:
     seconds, memory = [], []
     for _ in range(5):
         begin = time.perf_counter()
-        with running_server() as address:
+        with RunningServer() as address:
             while True:
                 answer = subprocess.run(
                     ["curl", "-s", "-o", "/dev/null", "-w", "%{http_code}", f"{address}/readyz"],
@@ -232,8 +234,8 @@ def resident_mb(address: str) -> float:
     ).stdout.split()
     sizes = []
     for pid in pids:
-        with open(f"/proc/{pid}/status", encoding="utf-8") as status:  # noqa: PTH123  # a kernel file
-            sizes += [int(line.split()[1]) / 1024 for line in status if line.startswith("VmRSS")]
+        status = Path(f"/proc/{pid}/status").read_text(encoding="utf-8").splitlines()
+        sizes += [int(line.split()[1]) / 1024 for line in status if line.startswith("VmRSS")]
     assert sizes, f"no server found for port {port}"
     return max(sizes)
 

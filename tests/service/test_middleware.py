@@ -9,7 +9,7 @@ import pytest
 
 from service.app import create_app
 from service.settings import Settings
-from tests.conftest import asker, running_server
+from tests.conftest import RunningServer, asker
 
 PATHS = [
     "/",
@@ -178,7 +178,7 @@ def test_even_what_is_no_http_is_answered_with_a_problem(server):
 
 
 def test_sigterm_ends_the_server_in_order():
-    run = running_server("--root-path", "/melt")
+    run = RunningServer("--root-path", "/melt")
     with run as address:
         host = urlsplit(address)
         connection = http.client.HTTPConnection(host.hostname, host.port, timeout=10)

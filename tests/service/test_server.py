@@ -7,7 +7,7 @@ import httpx
 import pytest
 
 from service.problems import KINDS
-from tests.conftest import running_server
+from tests.conftest import RunningServer
 
 
 def exchange(server, *pieces):
@@ -81,7 +81,7 @@ def test_more_than_is_worth_discarding_is_refused_at_once(server):
 
 
 def test_a_client_that_goes_away_while_sending_is_no_fault():
-    run = running_server()
+    run = RunningServer()
     with run as address:
         host = urlsplit(address)
         with socket.create_connection((host.hostname, host.port), timeout=10) as connection:

@@ -19,8 +19,6 @@ from service.process.window_answer import demands_of as window_demands_of
 from service.process.window_terms import EarlierJoint, remelting_term
 from service.schemas.profile import ProfileQuestion
 
-_OR_MEND = ", or ask for the repair “leave out dead sensors”"
-
 
 @dataclass(frozen=True, eq=False)
 class Run:
